@@ -96,12 +96,14 @@ def _odd_text(odd: Fraction) -> str:
 
 
 def low_parts(lp: LinearProgram, field: str) -> Vector:
-    """File's number minus its double, for ``c``, ``A`` (``A.data``), sides or bounds.
+    """File's number minus its double, for a field that ``lp.odd`` may name.
+
+    The shape is the field's: ``A`` stands for ``A.data``, ``offset`` for one number.
 
     Together with the double it carries every number to about 32 digits; 0 where
     the double is infinite or exact.
     """
-    values = lp.A.data if field == "A" else getattr(lp, field)
+    values = lp.A.data if field == "A" else np.atleast_1d(getattr(lp, field))
     return low_parts_of(values, lp.odd.get(field, {}))
 
 
