@@ -77,7 +77,8 @@ def number_text(value: float, odd: Fraction | None = None) -> str:
         return "inf" if value > 0 else "-inf"
     if value == int(value) and abs(value) < 1e16:
         return str(int(value))
-    return repr(float(value)).replace("e+", "e")
+    mantissa, mark, exponent = repr(float(value)).partition("e")
+    return f"{mantissa}e{int(exponent)}" if mark else mantissa
 
 
 def _odd_text(odd: Fraction) -> str:
@@ -142,3 +143,12 @@ def decimal_digits(values: Vector) -> tuple[np.ndarray, Vector]:
         digits[left[hit]] = rounded[hit]
         left = left[~hit]
     return places, digits
+
+
+PRINTED_DIGITS = 6
+"""Significant digits of numbers in tables."""
+
+
+def printed(value: float) -> float:
+    """The number that a table prints for ``value``, at `PRINTED_DIGITS` digits."""
+    return float(f"{value:.{PRINTED_DIGITS}g}")

@@ -186,9 +186,7 @@ def measure(
         zero = np.zeros_like
         sign = lp.sense.sign
         rows = _side(sign, row_value, row_term, (y, zero(y)), np.abs(y), numbers.row_ends)
-        columns = _side(
-            sign, (x, zero(x)), np.abs(x), price, price_term, numbers.column_ends
-        )
+        columns = _side(sign, (x, zero(x)), np.abs(x), price, price_term, numbers.column_ends)
         primal = numbers.objective(x)
         products = (*rows.dual_objective, *columns.dual_objective, numbers.offset)
         dual = accurate.total(products)
@@ -197,9 +195,7 @@ def measure(
         if z is not None:
             off = np.abs(accurate.minus(price, (z, zero(z)))[0])
             residuals[Condition.STATIONARITY] = Residuals(off, price_term)
-    return Measurement(
-        rows, columns, primal[0], dual[0], gap, _at_stake(rows, columns), residuals
-    )
+    return Measurement(rows, columns, primal[0], dual[0], gap, _at_stake(rows, columns), residuals)
 
 
 def _side(
@@ -210,9 +206,7 @@ def _side(
     above = accurate.minus(ends[1], value)
     named_lower = sign * price[0] > 0
     end: Pair = tuple(np.where(named_lower, a, b) for a, b in zip(*ends, strict=True))  # type: ignore[assignment]
-    distance: Pair = tuple(
-        np.where(named_lower, a, b) for a, b in zip(below, above, strict=True)
-    )  # type: ignore[assignment]
+    distance: Pair = tuple(np.where(named_lower, a, b) for a, b in zip(below, above, strict=True))  # type: ignore[assignment]
     finite = np.isfinite(end[0]) & (price[0] != 0)
     distance = tuple(np.where(finite, part, 0.0) for part in distance)  # type: ignore[assignment]
     end = tuple(np.where(finite, part, 0.0) for part in end)  # type: ignore[assignment]
@@ -255,13 +249,9 @@ def _residuals(
         ),
         Condition.COMPLEMENTARITY: Residuals(
             joined([s.complementarity for s in both]),
-            joined(
-                [np.abs(s.price) * np.maximum(np.abs(s.value), np.abs(s.end)) for s in both]
-            ),
+            joined([np.abs(s.price) * np.maximum(np.abs(s.value), np.abs(s.end)) for s in both]),
         ),
-        Condition.GAP: Residuals(
-            np.array([abs(gap)]), np.array([max(abs(primal), abs(dual))])
-        ),
+        Condition.GAP: Residuals(np.array([abs(gap)]), np.array([max(abs(primal), abs(dual))])),
     }
 
 
@@ -272,9 +262,7 @@ def _violation(side: Side) -> Vector:
 
 def _violation_term(side: Side) -> Vector:
     """Largest of the value's terms and the violated end (its size from the slack)."""
-    end = np.where(
-        side.below < side.above, side.value - side.below, side.value + side.above
-    )
+    end = np.where(side.below < side.above, side.value - side.below, side.value + side.above)
     return np.maximum(side.value_term, np.where(np.isfinite(end), np.abs(end), 0.0))
 
 

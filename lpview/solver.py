@@ -17,6 +17,7 @@ import numpy as np
 
 from lpview import trivial
 from lpview.answer import Answer, Basis, LineStatus, Statuses
+from lpview.decimals import number_text
 from lpview.model import LinearProgram, Sense, Vector
 from lpview.run import Claim, Method, Solved, SolverRun, SolveSettings, Unsolved, Watch
 from lpview.scaling import Limits, NotRepresentableError, Scaling, scaling_for
@@ -120,8 +121,7 @@ def _pass_model(highs: Any, lp: LinearProgram) -> None:
     )  # fmt: skip
     if status == highspy.HighsStatus.kError or highs.getNumNz() != A.nnz:
         raise NotRepresentableError(
-            "the solver does not take this model's numbers as they are; "
-            "state it in other units"
+            "the solver does not take this model's numbers as they are; state it in other units"
         )
 
 
@@ -138,9 +138,7 @@ def _follow(highs: Any, watch: Watch) -> None:
     highs.startCallback(kinds.kCallbackIpmInterrupt)
 
 
-def _record(
-    highs: Any, options: dict[str, Any], scaling: Scaling, seconds: float
-) -> SolverRun:
+def _record(highs: Any, options: dict[str, Any], scaling: Scaling, seconds: float) -> SolverRun:
     status = highs.getModelStatus()
     info = highs.getInfo()
     counts = (
@@ -153,7 +151,7 @@ def _record(
         message=highs.modelStatusToString(status),
         iterations=sum(max(count, 0) for count in counts),
         seconds=seconds,
-        options={name: str(value) for name, value in options.items()},
+        options={name: _option_text(value) for name, value in options.items()},
         rescaled=not scaling.is_none,
         solver=f"HiGHS {highs.version()}",
     )
@@ -186,3 +184,7 @@ def _statuses(found: list[Any], low: Vector, high: Vector) -> Statuses:
     codes[plain & np.isfinite(low)] = LineStatus.LOWER
     codes[plain & ~np.isfinite(low) & ~np.isfinite(high)] = LineStatus.FREE
     return codes
+
+
+def _option_text(value: Any) -> str:
+    return number_text(value) if isinstance(value, float) else str(value)

@@ -1,0 +1,218 @@
+"""Text to blocks: block lines, headers, and the cells below them.
+
+The body of most blocks is split in one go by `even_cells`; one with comments,
+quotes, blank lines or mistakes goes line by line, which also makes the messages.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Iterator, Sequence
+from dataclasses import dataclass, replace
+
+from lpview.blocks.even import even_cells
+from lpview.blocks.layout import BLOCKS, Header, Kind, block_lines, fixed_header, owner
+from lpview.blocks.lines import (
+    error_comments,
+    filled_lines,
+    quote_problem,
+    separator_problem,
+    width_problem,
+)
+from lpview.blocks.mistakes import Mistakes, Place, Problem, quoted
+from lpview.blocks.source import Source
+
+_ANY_SEPARATOR = ",;\t "
+
+
+@dataclass(frozen=True)
+class Block:
+    """One block of one file."""
+
+    source: Source
+    """The file."""
+    place: Place
+    """Where to report what is wrong with the block; has its name."""
+    line: int
+    """Line of the block line."""
+    argument: str
+    """Second cell of the block line, such as the sense; empty if there is none."""
+    header: Header = ()
+    """Cells of the header line up to the last filled one, as written."""
+    fixed: Header = ()
+    """The same in fixed words; empty for a wide block or one without header."""
+    header_line: int = 0
+    """Line of the header."""
+    flat: Sequence[str] = ()
+    """Cells below the header, line by line, each as long as the header."""
+    lines: Sequence[int] = ()
+    """Lines of the file on which they stand."""
+
+    @property
+    def name(self) -> str:
+        """Name without brackets."""
+        return self.place.block
+
+
+@dataclass(frozen=True)
+class _Part:
+    """A block line and the lines below it."""
+
+    cells: list[str]
+    """Cells of the block line."""
+    line: int
+    """Its number."""
+    body: str
+    """The lines below it, up to the next block line."""
+
+
+def read_blocks(source: Source, mistakes: Mistakes) -> list[Block]:
+    """The blocks of a file in order, without those that cannot be read."""
+    place = Place(source.file, "", mistakes)
+    for number, cell in error_comments(source):
+        place.wrong(number, "comment", Problem("a comment in words", quoted(cell)))
+    blocks = (_block(source, part, mistakes) for part in _parts(source, place))
+    return [block for block in blocks if block is not None]
+
+
+def _parts(source: Source, place: Place) -> list[_Part]:
+    text = source.text
+    starts: list[tuple[int, int, list[str]]] = []
+    for start, end in _bracket_lines(text):
+        line = text[start:end]
+        if quote_problem(source, line):
+            continue  # the block that holds the line will say so
+        cells = source.cells(line)
+        if _is_block_line(cells, inside=bool(starts)):
+            starts.append((start, end + 1, cells))
+    before = text[: starts[0][0]] if starts else text
+    _check_beginning(source, before, starts[0][2][0] if starts else "", place)
+    number, parts = 1 + before.count("\n"), []
+    ends = [start for start, _, _ in starts[1:]] + [len(text)]
+    for (start, body, cells), end in zip(starts, ends, strict=False):
+        parts.append(_Part(cells, number, text[body:end]))
+        number += text.count("\n", start, end)
+    return parts
+
+
+def _bracket_lines(text: str) -> Iterator[tuple[int, int]]:
+    """Where lines begin and end whose first cell may begin with a bracket."""
+    bracket = text.find("[")
+    while bracket >= 0:
+        start = text.rfind("\n", 0, bracket) + 1
+        end = text.find("\n", bracket)
+        end = len(text) if end < 0 else end
+        if not text[start:bracket].replace('"', "").strip():
+            yield start, end
+        bracket = text.find("[", end)
+
+
+def _is_block_line(cells: list[str], inside: bool) -> bool:
+    """Whether a line whose first cell may be in brackets begins a block.
+
+    Names in brackets are allowed, so that a line with further cells is one only
+    where its block takes an argument, and then not where it reads as a cost.
+    """
+    rest = [cell for cell in cells[1:] if cell]
+    name = cells[0] if rest else cells[0].rstrip(_ANY_SEPARATOR)
+    if not (name.startswith("[") and name.endswith("]")):
+        return False
+    if not rest or not inside:
+        return True
+    kind = BLOCKS.get(name[1:-1])
+    if kind is None or not kind.argument or len(rest) > 1 or not cells[1]:
+        return False
+    return kind.name != "c" or rest[0][0] not in "0123456789+-."
+
+
+def _check_beginning(source: Source, before: str, first: str, place: Place) -> None:
+    """Only comments may stand before the first block line."""
+    expected = BLOCKS[source.block].line if source.block else block_lines()
+    for number, cells in filled_lines(source, before, 1, place):
+        problem = Problem(expected, quoted(cells[0]))
+        place.wrong(number, "block line", separator_problem(source, cells) or problem)
+        return
+    if source.block and first and first.rstrip(_ANY_SEPARATOR) != f"[{source.block}]":
+        line = before.count("\n") + 1
+        place.wrong(line, "block line", Problem(expected, quoted(first)))
+
+
+def _block(source: Source, part: _Part, mistakes: Mistakes) -> Block | None:
+    name = part.cells[0].rstrip(_ANY_SEPARATOR)
+    kind = BLOCKS.get(name[1:-1])
+    if kind is None:
+        place = Place(source.file, "", mistakes)
+        problem, known = Problem(block_lines(), quoted(name)), [f"[{k}]" for k in BLOCKS]
+        place.unknown(part.line, "block line", problem, name, known)
+        return None
+    place = Place(source.file, kind.name, mistakes)
+    extra = next(filter(None, part.cells[2 if kind.argument else 1 :]), "")
+    if extra:
+        expected = f"nothing after {kind.line if kind.argument else name}"
+        place.wrong(part.line, "block line", Problem(expected, quoted(extra)))
+    argument = part.cells[1] if kind.argument and len(part.cells) > 1 else ""
+    block = Block(source, place, part.line, argument)
+    if kind.headers:
+        return _with_table(block, kind, part.body)
+    for number, cells in filled_lines(source, part.body, part.line + 1, place):
+        problem = Problem("the line of another block", quoted(cells[0]))
+        place.wrong(number, "line", problem)
+        break
+    return block
+
+
+def _with_table(block: Block, kind: Kind, text: str) -> Block | None:
+    """The block with its header and cells; None when it has no right header."""
+    source, number, start = block.source, block.line, 0
+    while start < len(text):
+        end = text.find("\n", start)
+        line, start = (text[start:], len(text)) if end < 0 else (text[start:end], end + 1)
+        number += 1
+        found = list(filled_lines(source, line, number, block.place))
+        if found or quote_problem(source, line):
+            break
+    else:
+        problem = Problem(kind.expected_header, "no line")
+        block.place.wrong(block.line, "header", problem)
+        return None
+    if not found:
+        return None
+    cells = found[0][1]
+    while not cells[-1]:
+        cells.pop()
+    header = tuple(cells)
+    fixed = fixed_header(kind, header)
+    if fixed is None:
+        _wrong_header(block, kind, header, number)
+        return None
+    block = replace(block, header=header, fixed=fixed, header_line=number)
+    return _with_cells(block, text[start:])
+
+
+def _wrong_header(block: Block, kind: Kind, header: Header, line: int) -> None:
+    other = owner(header)
+    advice = f"that is the header of [{other}]" if other else ""
+    problem = Problem(kind.expected_header, quoted(",".join(header)), advice)
+    mixed = separator_problem(block.source, list(header))
+    block.place.wrong(line, "header", mixed or problem)
+
+
+def _with_cells(block: Block, text: str) -> Block:
+    source, width = block.source, len(block.header)
+    first = block.header_line + 1 + len(text) - len(text.lstrip("\n"))
+    body = text.strip("\n")
+    if not body:
+        return block
+    even = even_cells(body, width, source.separator)
+    if even is not None:
+        lines = range(first, first + len(even) // width)
+        return replace(block, flat=even, lines=lines)
+    flat: list[str] = []
+    numbers: list[int] = []
+    for number, cells in filled_lines(source, body, first, block.place):
+        problem = width_problem(source, cells, width)
+        if problem:
+            block.place.wrong(number, "line", problem)
+        else:
+            flat += cells[:width]
+            numbers.append(number)
+    return replace(block, flat=flat, lines=numbers)

@@ -1,0 +1,121 @@
+"""A linear program to canonical CSV blocks, from which it is read back exactly.
+
+The text is the same for models that are `lpview.model.identical`: line feeds,
+commas, costs one a line, triplets by row, numbers in their shortest exact form.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Iterable, Iterator, Mapping
+from fractions import Fraction
+
+import numpy as np
+
+from lpview.blocks.cells import MOST_DIGITS, significant_digits
+from lpview.blocks.mistakes import InputError, Mistake, quoted
+from lpview.blocks.names import name_problem
+from lpview.decimals import number_text
+from lpview.model import LinearProgram, Vector
+
+
+def write_blocks(lp: LinearProgram) -> str:
+    """The canonical text of a model.
+
+    Raises `InputError` for a name that a file cannot hold; see `name_problem`.
+    """
+    _check_names(lp)
+    columns, rows = _cells(lp.columns), _cells(lp.rows)
+    # "[offset],5" is a block line, so that this column needs a longer line.
+    together = "[offset]" in lp.columns
+    blocks = [_objective(lp, columns, together)]
+    if lp.offset != 0:
+        blocks.append([f"[offset],{number_text(lp.offset, _odd(lp, 'offset').get(0))}"])
+    blocks += [_coefficients(lp, columns, rows), _rows(lp, rows)]
+    bounds = [] if together else list(_bounds(lp, columns))
+    if bounds:
+        blocks.append(["[bounds]", "column,lower,upper", *bounds])
+    return "\n".join("\n".join(block) + "\n" for block in blocks)
+
+
+def _check_names(lp: LinearProgram) -> None:
+    mistakes = [
+        Mistake(lp.name, problem, quoted(name), block=block, field=field)
+        for block, field, names in (("c", "column", lp.columns), ("b", "row", lp.rows))
+        for name in names
+        if (problem := name_problem(name))
+    ]
+    if mistakes:
+        raise InputError(mistakes)
+
+
+def _cells(names: Iterable[str]) -> list[str]:
+    """Names as cells, in quotes where they hold a separator or a quote."""
+    return [
+        '"' + name.replace('"', '""') + '"' if "," in name or '"' in name else name
+        for name in names
+    ]
+
+
+def _odd(lp: LinearProgram, field: str) -> Mapping[int, Fraction]:
+    return lp.odd.get(field, {})
+
+
+def _texts(values: Vector, odd: Mapping[int, Fraction]) -> list[str]:
+    """Numbers as text, in the form that may be read back."""
+    texts = [number_text(value) for value in values.tolist()]
+    for place, exact in odd.items():
+        text = number_text(float(values[place]), exact)
+        if significant_digits(text) > MOST_DIGITS:
+            text = f"{exact.numerator}/{exact.denominator}"
+        texts[place] = text
+    return texts
+
+
+def _texts_of(lp: LinearProgram, field: str) -> list[str]:
+    values = lp.A.data if field == "A" else getattr(lp, field)
+    return _texts(values, _odd(lp, field))
+
+
+def _objective(lp: LinearProgram, columns: list[str], together: bool) -> list[str]:
+    parts = [columns, _texts_of(lp, "c")]
+    header = "column,cost"
+    if together:
+        parts += [_texts_of(lp, "lower"), _texts_of(lp, "upper")]
+        header = "column,cost,lower,upper"
+    return [f"[c],{lp.sense.value}", header, *map(",".join, zip(*parts, strict=True))]
+
+
+def _coefficients(lp: LinearProgram, columns: list[str], rows: list[str]) -> list[str]:
+    row_of = np.repeat(np.arange(lp.m), np.diff(lp.A.indptr)).tolist()
+    places = zip(row_of, lp.A.indices.tolist(), _texts_of(lp, "A"), strict=True)
+    lines = [f"{rows[row]},{columns[column]},{text}" for row, column, text in places]
+    return ["[A]", "row,column,coefficient", *lines]
+
+
+def _rows(lp: LinearProgram, rows: list[str]) -> list[str]:
+    lower, upper = _texts_of(lp, "row_lower"), _texts_of(lp, "row_upper")
+    below, above = np.isinf(lp.row_lower), np.isinf(lp.row_upper)
+    if (lp.is_equality | (below != above)).all():
+        relations = np.where(below, "<=", np.where(above, ">=", "=")).tolist()
+        sides = [
+            high if r == "<=" else low for r, low, high in zip(relations, lower, upper, strict=True)
+        ]
+        lines = map(",".join, zip(rows, relations, sides, strict=True))
+        return ["[b]", "row,relation,rhs", *lines]
+    return ["[b]", "row,lower,upper", *_two_sided(rows, lower, upper)]
+
+
+def _two_sided(rows: list[str], lower: list[str], upper: list[str]) -> Iterator[str]:
+    for row, low, high in zip(rows, lower, upper, strict=True):
+        if (low, high) == ("-inf", "inf"):
+            # With empty cells a row called "[x]" would be a block line.
+            yield f"{row},none,none"
+        else:
+            yield f"{row},{low.replace('-inf', '')},{high.replace('inf', '')}"
+
+
+def _bounds(lp: LinearProgram, columns: list[str]) -> Iterator[str]:
+    unusual = np.flatnonzero((lp.lower != 0) | (lp.upper != np.inf)).tolist()
+    lower, upper = _texts_of(lp, "lower"), _texts_of(lp, "upper")
+    for place in unusual:
+        yield f"{columns[place]},{lower[place]},{upper[place]}"

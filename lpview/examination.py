@@ -1,0 +1,363 @@
+"""From a model to everything known about its answer, shared by all who print it.
+
+A solver claims; what is built here is checked. Each outcome is a type of its own:
+`Optimal` (the claim with its check, which may have failed), `NoOptimum` (infeasible
+or unbounded, with an accepted certificate), `NotEstablished` and `Stopped`.
+"""
+
+from __future__ import annotations
+
+import enum
+import hashlib
+import time
+from collections.abc import Callable
+from dataclasses import dataclass, field, replace
+
+import numpy as np
+
+from lpview.answer import Answer
+from lpview.basis import (
+    BasisMatrix,
+    BasisPrices,
+    PriceDifference,
+    SingularBasis,
+    compare_prices,
+    factor_basis,
+    matrix_prices,
+)
+from lpview.blocks import Notes, Reading, write_blocks
+from lpview.decimals import PRINTED_DIGITS, printed
+from lpview.dual import build_dual, original_answer
+from lpview.kkt import Condition, FileNumbers, Measurement, measure
+from lpview.marks import Marks, mark
+from lpview.model import LinearProgram
+from lpview.polish import Origin, OwnNumbers, Polished, is_rounding, polished, worst_failure
+from lpview.repair.search import Infeasible, Nothing, Unbounded, find_certificate
+from lpview.run import Claim, Solved, Solver, SolverRun, SolveSettings, Unsolved, Watch
+from lpview.scaling import NotRepresentableError
+from lpview.verdict import Verdict, judge
+
+LEAST_ITERATIONS = 200
+"""The second route may always take this many iterations, however quick the primal."""
+
+
+class SecondRoute(enum.Enum):
+    """Whether the rebuilt dual is solved as a model of its own."""
+
+    IF_QUICK = "if quick"
+    """At most as many iterations as the primal took: the same on every machine."""
+    ALWAYS = "always"
+    """Without a limit of its own."""
+    NEVER = "never"
+    """Not at all."""
+
+
+@dataclass(frozen=True)
+class Request:
+    """What was asked for, and how to ask again."""
+
+    source: str
+    """The model as the person named it."""
+    command: str
+    """A command that reproduces the report."""
+    tolerance: float = 1e-9
+    """Largest scaled residual that passes."""
+    zero: float = 1e-9
+    """Scaled size up to which a slack or a price counts as zero."""
+    solve: SolveSettings = field(default_factory=SolveSettings)
+    """What is asked of the solver; its time limit is that of the whole command."""
+    second_route: SecondRoute = SecondRoute.IF_QUICK
+    """Whether the rebuilt dual is solved too."""
+
+
+@dataclass(frozen=True)
+class Head:
+    """What every outcome has."""
+
+    model: LinearProgram
+    """The model as read."""
+    notes: Notes
+    """What reading it noticed."""
+    sha256: str
+    """SHA-256 of the model's canonical blocks, in hexadecimal."""
+    request: Request
+    """What was asked for."""
+    run: SolverRun
+    """The solver's run and claim."""
+
+
+@dataclass(frozen=True)
+class DualSolved:
+    """The rebuilt dual was solved as its own model."""
+
+    objective: float
+    """Its optimal objective, by its own primal objective."""
+    agrees: bool
+    """Whether that is the primal objective within the tolerance, scaled."""
+    difference: PriceDifference
+    """Its dual values against those of the answer."""
+    seconds: float
+    """Elapsed time of its run."""
+
+
+@dataclass(frozen=True)
+class DualNotSolved:
+    """The rebuilt dual was not solved."""
+
+    reason: str
+    """Why, as the end of a sentence that begins with "not done:"."""
+
+
+@dataclass(frozen=True)
+class BasisRoute:
+    """Prices recomputed from the basis, against the solver's own."""
+
+    prices: BasisPrices
+    """What the basis fixes."""
+    difference: PriceDifference
+    """Against the solver's own dual values."""
+
+
+@dataclass(frozen=True)
+class NoBasisRoute:
+    """There was no basis to recompute prices from."""
+
+    reason: str
+    """Why, as the end of a sentence that begins with "not done:"."""
+
+
+@dataclass(frozen=True)
+class Rounded:
+    """The plan checked again at the digits that a report prints."""
+
+    digits: int
+    """Significant digits kept."""
+    absolute: float
+    """Size of the violation on its worst line, in that line's unit."""
+    scaled: float
+    """The same, scaled; the largest of all lines."""
+    line: int | None
+    """That line, numbered as in `lpview.kkt`; None where nothing is violated."""
+
+
+@dataclass(frozen=True)
+class Optimal:
+    """The solver claims an optimum; here is the check of its answer."""
+
+    head: Head
+    """What was asked and run."""
+    answer: Answer
+    """The answer that was checked."""
+    origin: Origin
+    """Whether the answer is the solver's own or had its rounding taken out."""
+    measurement: Measurement
+    """Residuals, slacks, prices, objectives."""
+    verdicts: tuple[Verdict, ...]
+    """One per condition."""
+    marks: Marks
+    """Flags and spine marks of every line."""
+    basis_route: BasisRoute | NoBasisRoute
+    """First independent route to the prices."""
+    dual_route: DualSolved | DualNotSolved
+    """Second independent route to the prices."""
+    rounded: Rounded
+    """The plan at the printed digits."""
+
+    @property
+    def passed(self) -> bool:
+        """Whether every condition passed; one that holds by definition is left out."""
+        return all(verdict.passed is not False for verdict in self.verdicts)
+
+
+@dataclass(frozen=True)
+class NoOptimum:
+    """Infeasible or unbounded, with a certificate that the check accepted."""
+
+    head: Head
+    """What was asked and run."""
+    certificate: Infeasible | Unbounded
+    """The accepted certificate."""
+
+
+@dataclass(frozen=True)
+class NotEstablished:
+    """The solver's claim could not be confirmed."""
+
+    head: Head
+    """What was asked and run."""
+    reason: str
+    """Why not, in a sentence."""
+
+
+@dataclass(frozen=True)
+class Stopped:
+    """A limit or a person ended the work before there was a result."""
+
+    head: Head
+    """What was asked and run."""
+
+
+Examination = Optimal | NoOptimum | NotEstablished | Stopped
+
+
+def examine(
+    reading: Reading, request: Request, solve: Solver, watch: Watch | None = None
+) -> Examination:
+    """Solve a model and check what the solver says.
+
+    Parameters
+    ----------
+    solve
+        The solver; only its answer and claim come back, and neither is believed.
+    watch
+        Lets another thread follow and stop the work.
+
+    Raises
+    ------
+    lpview.scaling.NotRepresentableError
+        The solver cannot be given the model's own numbers.
+    """
+    watch = watch or Watch()
+    lp = reading.model
+    ask = _within_time_limit(request.solve, solve, watch)
+    result = ask(lp, request.solve)
+    sha256 = hashlib.sha256(write_blocks(lp).encode()).hexdigest()
+    head = Head(lp, reading.notes, sha256, request, result.run)
+    if isinstance(result, Solved):
+        return _check(head, result.answer, ask)
+    if result.run.claim.is_stop:
+        return Stopped(head)
+    try:
+        found = find_certificate(lp, lambda part: ask(part, request.solve), request.tolerance)
+    except NotRepresentableError as error:
+        found = Nothing(f"the auxiliary model is out of the solver's range: {error}")
+    if not isinstance(found, Nothing):
+        return NoOptimum(head, found)
+    if watch.stop.is_set():
+        return Stopped(replace(head, run=replace(head.run, claim=Claim.INTERRUPTED)))
+    return NotEstablished(head, found.reason)
+
+
+Ask = Callable[[LinearProgram, SolveSettings], Solved | Unsolved]
+
+
+def _within_time_limit(settings: SolveSettings, solve: Solver, watch: Watch) -> Ask:
+    """A solver whose runs share one time limit."""
+    started: list[float] = []
+
+    def ask(lp: LinearProgram, wanted: SolveSettings) -> Solved | Unsolved:
+        if not started:
+            # The first run gets the limit to the digit, so that reports are alike.
+            started.append(time.monotonic())
+        elif settings.time_limit is not None:
+            left = settings.time_limit - (time.monotonic() - started[0])
+            wanted = replace(wanted, time_limit=max(left, 0.0))
+        return solve(lp, wanted, watch)
+
+    return ask
+
+
+def _check(head: Head, answer: Answer, ask: Ask) -> Optimal:
+    lp = head.model
+    numbers = FileNumbers(lp)
+    matrix: BasisMatrix | SingularBasis = SingularBasis("is missing: the method ends without one")
+    if answer.basis is not None:
+        matrix = factor_basis(lp, answer.basis)
+    basis_route = _basis_route(lp, answer, matrix)
+    judged = _judged(head, answer, OwnNumbers(), numbers)
+    if is_rounding(judged.verdicts) and isinstance(basis_route, BasisRoute):
+        judged = _better(judged, head, basis_route, matrix, numbers)
+    return Optimal(
+        head=head,
+        answer=judged.answer,
+        origin=judged.origin,
+        measurement=judged.found,
+        verdicts=judged.verdicts,
+        marks=mark(lp, judged.found, answer.basis, head.request.tolerance, head.request.zero),
+        basis_route=basis_route,
+        dual_route=_dual_route(head, judged, basis_route, ask),
+        rounded=_rounded(lp, judged.answer, numbers),
+    )
+
+
+@dataclass(frozen=True)
+class _Judged:
+    answer: Answer
+    origin: Origin
+    found: Measurement
+    verdicts: tuple[Verdict, ...]
+
+
+def _judged(head: Head, answer: Answer, origin: Origin, numbers: FileNumbers) -> _Judged:
+    found = measure(head.model, answer.x, answer.y, answer.z, numbers)
+    return _Judged(answer, origin, found, judge(found, head.request.tolerance))
+
+
+def _better(
+    own: _Judged,
+    head: Head,
+    route: BasisRoute,
+    matrix: BasisMatrix | SingularBasis,
+    numbers: FileNumbers,
+) -> _Judged:
+    """The polished answer, if the solver's prices are those of its basis and it helps."""
+    basis = own.answer.basis
+    if basis is None or isinstance(matrix, SingularBasis) or route.difference.beyond:
+        return own
+    worst = worst_failure(own.verdicts)
+    origin = Polished(worst.condition, worst.scaled)
+    answer = polished(head.model, own.answer, basis, matrix, numbers)
+    other = _judged(head, answer, origin, numbers)
+    return other if worst_failure(other.verdicts).scaled < worst.scaled else own
+
+
+def _basis_route(
+    lp: LinearProgram, answer: Answer, matrix: BasisMatrix | SingularBasis
+) -> BasisRoute | NoBasisRoute:
+    if isinstance(matrix, SingularBasis):
+        return NoBasisRoute(f"the basis {matrix.reason}")
+    prices = matrix_prices(lp, matrix)
+    return BasisRoute(prices, compare_prices(answer.y, prices.y, prices.explained))
+
+
+def _dual_route(
+    head: Head, judged: _Judged, basis_route: BasisRoute | NoBasisRoute, ask: Ask
+) -> DualSolved | DualNotSolved:
+    settings, wanted = head.request.solve, head.request.second_route
+    if wanted is SecondRoute.NEVER:
+        return DualNotSolved("not asked for")
+    if wanted is SecondRoute.IF_QUICK:
+        limit = max(head.run.iterations, LEAST_ITERATIONS)
+        settings = replace(settings, iteration_limit=limit)
+    pair = build_dual(head.model)
+    try:
+        result = ask(pair.program, settings)
+    except NotRepresentableError:
+        return DualNotSolved("its numbers do not fit the solver's")
+    if isinstance(result, Unsolved):
+        if result.run.claim is Claim.ITERATION_LIMIT:
+            return DualNotSolved("it takes more iterations than the model itself")
+        return DualNotSolved(f"the solver ended with: {result.run.claim.value}")
+    other = original_answer(pair, result.answer)
+    objective = FileNumbers(pair.program).objective(result.answer.x)[0]
+    size = max(1.0, abs(objective), abs(judged.found.primal_objective))
+    apart = abs(objective - judged.found.primal_objective)
+    allowed = np.zeros(head.model.m)
+    if isinstance(basis_route, BasisRoute):
+        allowed = basis_route.prices.explained
+    return DualSolved(
+        objective=objective,
+        agrees=bool(apart <= head.request.tolerance * size),
+        difference=compare_prices(judged.answer.y, other.y, allowed),
+        seconds=result.run.seconds,
+    )
+
+
+def _rounded(lp: LinearProgram, answer: Answer, numbers: FileNumbers) -> Rounded:
+    x = np.array([printed(value) for value in answer.x.tolist()])
+    found = measure(lp, x, np.zeros(lp.m), None, numbers).residuals[Condition.PRIMAL]
+    scaled = found.scaled
+    if not scaled.size or not scaled.any():
+        return Rounded(PRINTED_DIGITS, 0.0, 0.0, None)
+    line = int(np.argmax(scaled))
+    return Rounded(PRINTED_DIGITS, float(found.absolute[line]), float(scaled[line]), line)

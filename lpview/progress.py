@@ -1,0 +1,93 @@
+"""Long work in a thread of its own, so that Ctrl-C and a progress line get through."""
+
+from __future__ import annotations
+
+import os
+import signal
+import sys
+import threading
+import time
+from collections.abc import Callable
+from typing import Generic, TypeVar
+
+from lpview.run import Watch
+
+QUIET_SECONDS = 1.0
+"""Work shorter than this shows no progress."""
+TICK_SECONDS = 0.1
+"""How often the progress line changes."""
+
+Result = TypeVar("Result")
+
+
+class _Worker(threading.Thread, Generic[Result]):
+    """Runs one function and keeps its result or its exception."""
+
+    def __init__(self, work: Callable[[], Result]) -> None:
+        super().__init__(daemon=True)
+        self._work = work
+        self.results: list[Result] = []
+        self.error: BaseException | None = None
+
+    def run(self) -> None:
+        """Do the work."""
+        try:
+            self.results.append(self._work())
+        except BaseException as error:
+            self.error = error
+
+
+def watched(work: Callable[[], Result], watch: Watch, label: str) -> Result:
+    """Do ``work``, showing progress on standard error where that is a terminal.
+
+    The first Ctrl-C sets ``watch.stop`` and waits for the work to end by itself;
+    the second leaves at once with exit status 4. Exceptions of the work are raised here.
+    """
+    worker = _Worker(work)
+    line = _ProgressLine(label, watch)
+
+    def on_interrupt(_signal: int, _frame: object) -> None:
+        if watch.stop.is_set():
+            line.clear()
+            os._exit(4)
+        watch.stop.set()
+
+    before = signal.signal(signal.SIGINT, on_interrupt)
+    try:
+        worker.start()
+        while worker.is_alive():
+            worker.join(TICK_SECONDS)
+            line.show()
+    finally:
+        line.clear()
+        signal.signal(signal.SIGINT, before)
+    if worker.error is not None:
+        raise worker.error
+    return worker.results[0]
+
+
+class _ProgressLine:
+    """One line of a terminal, rewritten in place."""
+
+    def __init__(self, label: str, watch: Watch) -> None:
+        self._label, self._watch = label, watch
+        self._started = time.monotonic()
+        self._shown = False
+
+    def show(self) -> None:
+        """Rewrite the line, once the work has taken long enough."""
+        seconds = time.monotonic() - self._started
+        if seconds < QUIET_SECONDS or not sys.stderr.isatty():
+            return
+        doing = "stopping" if self._watch.stop.is_set() else "solving"
+        text = f"{self._label}: {doing}, {seconds:.0f} s, iteration {self._watch.iterations}"
+        sys.stderr.write(f"\r{text}\x1b[K")
+        sys.stderr.flush()
+        self._shown = True
+
+    def clear(self) -> None:
+        """Leave no trace of the line."""
+        if self._shown:
+            sys.stderr.write("\r\x1b[K")
+            sys.stderr.flush()
+            self._shown = False

@@ -1,0 +1,1 @@
+"""Examinations as text, Markdown and JSON; one number formatter for all of them."""

@@ -1,0 +1,128 @@
+"""What the check of a model reports, for every outcome, before it is rendered."""
+
+from __future__ import annotations
+
+import platform
+
+from lpview import __version__
+from lpview.examination import (
+    Examination,
+    Head,
+    NoOptimum,
+    NotEstablished,
+    Optimal,
+    Stopped,
+)
+from lpview.model import LinearProgram
+from lpview.repair.search import Infeasible
+from lpview.report import answer, certificate
+from lpview.report.document import Block, Command, Document, Facts, Sentence
+from lpview.report.names import safe
+from lpview.report.numbers import count, residual
+
+CAUTION = (
+    "A verified optimum is only as good as the model; local rules and licensed practice decide."
+)
+"""What every report ends with."""
+
+
+def report(found: Examination, full: bool = False) -> Document:
+    """The report of an examination; at most 40 lines of text unless ``full``."""
+    head = found.head
+    return (
+        Sentence(f"{_title(head)}: {verdict(found)}", strong=True),
+        Sentence("; ".join([shape(head.model), *_notes(head)])),
+        *_body(found, full),
+        Facts(_provenance(head)),
+        Command("reproduce", head.request.command),
+        Sentence(CAUTION),
+    )
+
+
+def _title(head: Head) -> str:
+    return safe(head.request.source)
+
+
+def verdict(found: Examination) -> str:
+    """The outcome in one sentence."""
+    if isinstance(found, Optimal):
+        failed = [v.condition.value for v in found.verdicts if v.passed is False]
+        tolerance = residual(found.head.request.tolerance)
+        if failed:
+            return f"NOT VERIFIED: the solver says optimal, but the check fails {_and(failed)}"
+        return f"optimal, verified: every condition passed at {tolerance} scaled"
+    if isinstance(found, NoOptimum):
+        if isinstance(found.certificate, Infeasible):
+            return "infeasible, certified: no plan satisfies every line"
+        return "unbounded, certified: the objective improves without limit"
+    if isinstance(found, NotEstablished):
+        return "not established: the solver's claim could not be confirmed"
+    return f"stopped before there was a result: {found.head.run.claim.value}"
+
+
+def _and(parts: list[str]) -> str:
+    return ", ".join(parts[:-1]) + (" and " if parts[:-1] else "") + parts[-1]
+
+
+def shape(lp: LinearProgram) -> str:
+    """Sense and size, in a line."""
+    return (
+        f"{lp.sense.value}, {count(lp.m, 'constraint')}, {count(lp.n, 'variable')}, "
+        f"{count(lp.A.nnz, 'nonzero coefficient')}"
+    )
+
+
+def _notes(head: Head) -> list[str]:
+    """What reading noticed, where it noticed anything."""
+    notes, parts = head.notes, []
+    if notes.empty_coefficients:
+        parts.append(f"{count(notes.empty_coefficients, 'empty coefficient')} read as 0")
+    if notes.empty_costs:
+        parts.append(f"{count(notes.empty_costs, 'empty cost')} read as 0")
+    if notes.rows_without_coefficients:
+        parts.append(f"{count(len(notes.rows_without_coefficients), 'row')} without coefficients")
+    if notes.names_alike:
+        one, other = notes.names_alike[0]
+        pairs = count(len(notes.names_alike), "pair")
+        parts.append(f"{pairs} of names alike, such as {safe(one)} and {safe(other)}")
+    return ["noticed while reading: " + ", ".join(parts)] if parts else []
+
+
+def _body(found: Examination, full: bool) -> tuple[Block, ...]:
+    if isinstance(found, Optimal):
+        return answer.body(found, full)
+    if isinstance(found, NoOptimum):
+        return certificate.body(found, full)
+    if isinstance(found, NotEstablished):
+        claim = found.head.run
+        return (
+            Sentence(f"the solver's claim: {claim.claim.value} ({safe(claim.message)})"),
+            Sentence(f"why it is not confirmed: {found.reason}"),
+        )
+    return (Sentence(_advice(found)),)
+
+
+def _advice(found: Stopped) -> str:
+    run = found.head.run
+    return (
+        f"{count(run.iterations, 'iteration')} were done; allow more with --time-limit SECONDS, "
+        "or choose another --method"
+    )
+
+
+def _provenance(head: Head) -> tuple[tuple[str, str], ...]:
+    """What it takes to get the same report again."""
+    request, run = head.request, head.run
+    options = ", ".join(f"{name} {value}" for name, value in run.options.items())
+    rescaled = "; lines rescaled by powers of two" if run.rescaled else ""
+    most = ", ".join(f"{block} {places}" for block, places in head.notes.most_decimals.items())
+    decimals = f"most decimals {most}"
+    return (
+        ("model SHA-256", head.sha256),
+        (
+            "made with",
+            f"lpview {__version__}, {run.solver}, Python {platform.python_version()}; tolerance "
+            f"{residual(request.tolerance)}, zero {residual(request.zero)}; {decimals}",
+        ),
+        ("solver options", (options or "none") + rescaled),
+    )

@@ -1,0 +1,279 @@
+"""A report as JSON, format 1; README.md documents every field."""
+
+from __future__ import annotations
+
+import json
+import math
+import platform
+from typing import Any
+
+import numpy as np
+
+from lpview import __version__
+from lpview.examination import (
+    BasisRoute,
+    DualSolved,
+    Examination,
+    Head,
+    NoOptimum,
+    NotEstablished,
+    Optimal,
+)
+from lpview.model import LinearProgram, Vector
+from lpview.polish import Polished
+from lpview.repair.search import Infeasible, Unbounded
+from lpview.report.names import line_kind_and_name
+from lpview.verdict import Verdict
+
+FORMAT = 1
+"""Raised only when a documented field changes its meaning."""
+
+
+def render(found: Examination | list[Examination]) -> str:
+    """One object, or an array of them where several models were asked for."""
+    content = [_object(one) for one in found] if isinstance(found, list) else _object(found)
+    return json.dumps(content, ensure_ascii=False, indent=1, allow_nan=False) + "\n"
+
+
+def _object(found: Examination) -> dict[str, Any]:
+    answer = found if isinstance(found, Optimal) else None
+    return {
+        "format": FORMAT,
+        "status": status(found),
+        "dual_infeasible": _dual_infeasible(found),
+        "passed": answer.passed if answer else None,
+        "model": _model(found.head),
+        "objective": _objective(answer) if answer else None,
+        "residuals": _residuals(answer) if answer else [],
+        "constraints": _constraints(answer) if answer else [],
+        "variables": _variables(answer) if answer else [],
+        "certificate": _certificate(found) if isinstance(found, NoOptimum) else None,
+        "answer": _answer(answer) if answer else None,
+        "reason": found.reason if isinstance(found, NotEstablished) else None,
+        "noticed": _noticed(found.head),
+        "settings": _settings(found.head),
+        "tool": {
+            "lpview": __version__,
+            "highs": found.head.run.solver.removeprefix("HiGHS "),
+            "python": platform.python_version(),
+        },
+        "timing": {"solve_seconds": found.head.run.seconds},
+    }
+
+
+def status(found: Examination) -> str:
+    """One of the five documented words."""
+    if isinstance(found, Optimal):
+        return "optimal"
+    if isinstance(found, NoOptimum):
+        infeasible = isinstance(found.certificate, Infeasible)
+        return "infeasible" if infeasible else "unbounded"
+    return "not established" if isinstance(found, NotEstablished) else "stopped"
+
+
+def _dual_infeasible(found: Examination) -> bool | None:
+    if isinstance(found, NoOptimum) and isinstance(found.certificate, Infeasible):
+        return found.certificate.dual_infeasible
+    return None
+
+
+def _model(head: Head) -> dict[str, Any]:
+    lp = head.model
+    return {
+        "name": lp.name,
+        "sha256": head.sha256,
+        "rows": lp.m,
+        "columns": lp.n,
+        "nonzeros": int(lp.A.nnz),
+        "sense": lp.sense.value,
+    }
+
+
+def _objective(found: Optimal) -> dict[str, Any]:
+    measured = found.measurement
+    return {
+        "primal": _plain(measured.primal_objective),
+        "dual": _plain(measured.dual_objective),
+        "gap": _plain(measured.gap),
+        "at_stake": _plain(measured.at_stake),
+    }
+
+
+def _residuals(found: Optimal) -> list[dict[str, Any]]:
+    return [_residual(found.head.model, verdict) for verdict in found.verdicts]
+
+
+def _residual(lp: LinearProgram, verdict: Verdict) -> dict[str, Any]:
+    known = verdict.passed is not None
+    return {
+        "condition": verdict.condition.value,
+        "absolute": _plain(verdict.absolute) if known else None,
+        "scaled": _plain(verdict.scaled) if known else None,
+        "relative": _plain(verdict.relative) if known else None,
+        "tolerance": verdict.tolerance,
+        "passed": verdict.passed,
+        "worst": _line(lp, verdict.worst),
+    }
+
+
+def _line(lp: LinearProgram, line: int | None) -> dict[str, str] | None:
+    if line is None:
+        return None
+    kind, name = line_kind_and_name(lp, line)
+    return {kind: name}
+
+
+def _constraints(found: Optimal) -> list[dict[str, Any]]:
+    lp, side = found.head.model, found.measurement.rows
+    fields = {
+        "row": lp.rows,
+        "value": _numbers(side.value),
+        "lower": _numbers(lp.row_lower),
+        "upper": _numbers(lp.row_upper),
+        "slack": _numbers(side.slack),
+        "slack_lower": _numbers(side.below),
+        "slack_upper": _numbers(side.above),
+        "dual_value": _numbers(found.answer.y),
+        "complementarity": _numbers(side.complementarity),
+        "flags": _flags(found, 0, lp.m),
+    }
+    return _records(fields)
+
+
+def _variables(found: Optimal) -> list[dict[str, Any]]:
+    lp, side = found.head.model, found.measurement.columns
+    fields = {
+        "column": lp.columns,
+        "value": _numbers(found.answer.x),
+        "lower": _numbers(lp.lower),
+        "upper": _numbers(lp.upper),
+        "cost": _numbers(lp.c),
+        "reduced_cost": _numbers(found.answer.z),
+        "complementarity": _numbers(side.complementarity),
+        "flags": _flags(found, lp.m, lp.m + lp.n),
+    }
+    return _records(fields)
+
+
+def _records(fields: dict[str, Any]) -> list[dict[str, Any]]:
+    names = tuple(fields)
+    return [dict(zip(names, line, strict=True)) for line in zip(*fields.values(), strict=True)]
+
+
+def _flags(found: Optimal, start: int, stop: int) -> list[list[str]]:
+    words: list[list[str]] = [[] for _ in range(stop - start)]
+    for flag, mask in found.marks.flags.items():
+        for line in np.flatnonzero(mask[start:stop]).tolist():
+            words[line].append(flag.value)
+    return words
+
+
+def _answer(found: Optimal) -> dict[str, Any]:
+    """Where the checked numbers come from, and what else speaks for them."""
+    lp, rounded, basis, dual = (
+        found.head.model,
+        found.rounded,
+        found.basis_route,
+        found.dual_route,
+    )
+    return {
+        "basis": found.answer.basis is not None,
+        "polished": isinstance(found.origin, Polished),
+        "rounded": {
+            "digits": rounded.digits,
+            "absolute": _plain(rounded.absolute),
+            "scaled": _plain(rounded.scaled),
+            "worst": _line(lp, rounded.line),
+        },
+        "prices_from_basis": {
+            "done": isinstance(basis, BasisRoute),
+            "reason": None if isinstance(basis, BasisRoute) else basis.reason,
+            "condition": _plain(basis.prices.condition) if isinstance(basis, BasisRoute) else None,
+            **_difference(lp, basis if isinstance(basis, BasisRoute) else None),
+        },
+        "prices_from_dual": {
+            "done": isinstance(dual, DualSolved),
+            "reason": None if isinstance(dual, DualSolved) else dual.reason,
+            "objective": _plain(dual.objective) if isinstance(dual, DualSolved) else None,
+            "objective_agrees": dual.agrees if isinstance(dual, DualSolved) else None,
+            **_difference(lp, dual if isinstance(dual, DualSolved) else None),
+        },
+    }
+
+
+def _difference(lp: LinearProgram, route: BasisRoute | DualSolved | None) -> dict[str, Any]:
+    if route is None:
+        return {"largest_difference": None, "row": None, "rows_beyond_rounding": None}
+    found = route.difference
+    return {
+        "largest_difference": _plain(found.largest),
+        "row": None if found.row is None else lp.rows[found.row],
+        "rows_beyond_rounding": found.beyond,
+    }
+
+
+def _certificate(found: NoOptimum) -> dict[str, Any]:
+    lp, certificate = found.head.model, found.certificate
+    if isinstance(certificate, Unbounded):
+        ray = certificate.ray
+        return {
+            "kind": "plan and ray",
+            "rate": _plain(ray.rate),
+            "violation": _plain(ray.violation),
+            "drift": _plain(ray.drift),
+            "plan": _sparse("column", lp.columns, ray.x),
+            "ray": _sparse("column", lp.columns, ray.direction),
+        }
+    farkas = certificate.farkas
+    return {
+        "kind": "Farkas multipliers",
+        "contradiction": _plain(farkas.contradiction),
+        "misplaced": _plain(farkas.misplaced),
+        "reach": _plain(farkas.reach),
+        "constraints": _sparse("row", lp.rows, farkas.y),
+        "variables": _sparse("column", lp.columns, farkas.z),
+    }
+
+
+def _sparse(kind: str, names: tuple[str, ...], values: Vector) -> list[dict[str, Any]]:
+    return [
+        {kind: names[k], "value": _plain(float(values[k]))} for k in np.flatnonzero(values).tolist()
+    ]
+
+
+def _noticed(head: Head) -> dict[str, Any]:
+    notes = head.notes
+    return {
+        "empty_coefficients": notes.empty_coefficients,
+        "empty_costs": notes.empty_costs,
+        "rows_without_coefficients": list(notes.rows_without_coefficients),
+        "names_alike": [list(pair) for pair in notes.names_alike],
+        "most_decimals": dict(notes.most_decimals),
+    }
+
+
+def _settings(head: Head) -> dict[str, Any]:
+    request, run = head.request, head.run
+    return {
+        "source": request.source,
+        "command": request.command,
+        "tolerance": request.tolerance,
+        "zero": request.zero,
+        "claim": run.claim.value,
+        "solver_message": run.message,
+        "solver_options": dict(run.options),
+        "rescaled": run.rescaled,
+        "iterations": run.iterations,
+    }
+
+
+def _numbers(values: Vector) -> list[float | str]:
+    plain = values.tolist()
+    if np.isfinite(values).all():
+        return plain  # type: ignore[no-any-return]
+    return [_plain(value) for value in plain]
+
+
+def _plain(value: float) -> float | str:
+    """A number, or one of the strings "inf", "-inf" and "nan"."""
+    return value if math.isfinite(value) else str(value)
