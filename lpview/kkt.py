@@ -194,7 +194,9 @@ def measure(
         residuals = _residuals(rows, columns, (primal[0], dual[0], gap))
         if z is not None:
             off = np.abs(accurate.minus(price, (z, zero(z)))[0])
-            residuals[Condition.STATIONARITY] = Residuals(off, price_term)
+            # Rows have no such condition, but are counted like all lines.
+            rows_too = (np.zeros(lp.m), off), (np.zeros(lp.m), price_term)
+            residuals[Condition.STATIONARITY] = Residuals(*map(np.concatenate, rows_too))
     return Measurement(rows, columns, primal[0], dual[0], gap, _at_stake(rows, columns), residuals)
 
 
