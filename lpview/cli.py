@@ -6,6 +6,7 @@ import argparse
 import os
 import sys
 from collections.abc import Sequence
+from functools import partial
 
 from lpview import __version__
 
@@ -19,7 +20,10 @@ _WORST_FIRST = (USAGE, FAILED, NOT_ESTABLISHED, NO_OPTIMUM, DONE)
 def main(arguments: Sequence[str] | None = None) -> int:
     """Run one command; returns its exit status. No traceback reaches the person."""
     given = list(sys.argv[1:] if arguments is None else arguments)
-    options = _parser().parse_args(_with_command(given))
+    parser = _parser()
+    options = parser.parse_args(_with_command(given))
+    if options.command == "check":
+        _require_one_form(parser, options)
     try:
         return _run(options)
     except KeyboardInterrupt:
@@ -28,39 +32,46 @@ def main(arguments: Sequence[str] | None = None) -> int:
         # Whoever read the output has left; keep the interpreter from complaining.
         os.dup2(os.open(os.devnull, os.O_WRONLY), sys.stdout.fileno())
         return DONE
-    except OSError as error:
-        where = error.filename or "output"
-        problem = error.strerror or str(error)
-        return _complain(f"{where}: expected a file that can be written, got: {problem}", USAGE)
-    except Exception as error:  # a defect of ours: say so in a line, not in a traceback
+    except Exception as error:
         if "LPVIEW_TRACEBACK" in os.environ:
             raise
-        kind = type(error).__name__
-        return _complain(
-            f"lpview failed by a mistake of its own ({kind}: {error}); nothing was decided. "
-            "Please report it with the model; LPVIEW_TRACEBACK=1 shows where.",
-            NOT_ESTABLISHED,
-        )
+        return _complain(*told(error))
 
 
-def _with_command(given: list[str]) -> list[str]:
-    """``lpview MODEL`` is short for ``lpview check MODEL`` outside a terminal."""
-    if given and not given[0].startswith("-") and given[0] not in _COMMANDS:
-        return ["check", *given]
-    if given and given[0] == "-":
-        return ["check", *given]
-    return given
-
-
-def _run(options: argparse.Namespace) -> int:
-    from lpview import commands
+def told(error: Exception) -> tuple[str, int]:
+    """What to tell the person about an exception, and the exit status."""
     from lpview.blocks import InputError
     from lpview.scaling import NotRepresentableError
 
-    try:
-        statuses: list[int] = getattr(commands, options.command)(options)
-    except (InputError, NotRepresentableError) as error:
-        return _complain(str(error), USAGE)
+    if isinstance(error, (InputError, NotRepresentableError)):
+        return str(error), USAGE
+    if isinstance(error, OSError):
+        where, problem = error.filename or "output", error.strerror or str(error)
+        return f"{where}: expected a file that can be written, got: {problem}", USAGE
+    # A defect of ours: say so in a line, not in a traceback.
+    return (
+        f"lpview failed by a mistake of its own ({type(error).__name__}: {error}); nothing was "
+        "decided. Please report it with the model; LPVIEW_TRACEBACK=1 shows where.",
+        NOT_ESTABLISHED,
+    )
+
+
+def _with_command(given: list[str]) -> list[str]:
+    """``lpview MODEL`` opens the mirror in a terminal, and is the check elsewhere."""
+    if not given or given[0] in _COMMANDS or (given[0].startswith("-") and given[0] != "-"):
+        return given
+    can_open = sys.stdin.isatty() and sys.stdout.isatty() and given[0] != "-"
+    return ["open" if can_open else "check", *given]
+
+
+def _run(options: argparse.Namespace) -> int:
+    if options.command == "open":
+        from lpview.screen.launch import launch
+
+        return launch(options)
+    from lpview import commands
+
+    statuses: list[int] = getattr(commands, options.command)(options)
     return worst(statuses)
 
 
@@ -75,6 +86,7 @@ def _complain(text: str, status: int) -> int:
 
 
 _COMMANDS = {
+    "open": "review a model at the keyboard (the command that MODEL alone is short for)",
     "check": "solve a model and check every KKT condition of the answer",
     "dual": "write the dual linear program as CSV blocks",
     "convert": "write a model as canonical CSV blocks",
@@ -99,14 +111,21 @@ def _parser() -> argparse.ArgumentParser:
             metavar="MODEL",
             help="a .csv file or a folder of CSV blocks, or - for standard input",
         )
-        command.add_argument("--output", metavar="FILE", help="write here, not to the screen")
+        if name != "open":
+            command.add_argument("--output", metavar="FILE", help="write here, not to the screen")
     _add_check_options(made["check"])
+    made["check"].add_argument("--format", choices=("text", "markdown", "json"), default="text")
+    made["check"].add_argument("--full", action="store_true", help="list every line, however many")
+    _add_line_options(made["check"])
+    _add_check_options(made["open"])
+    made["open"].add_argument(
+        "--ascii", action="store_true", help="draw all marks with plain characters"
+    )
+    made["open"].set_defaults(format="text", full=False)
     return parser
 
 
 def _add_check_options(check: argparse.ArgumentParser) -> None:
-    check.add_argument("--format", choices=("text", "markdown", "json"), default="text")
-    check.add_argument("--full", action="store_true", help="list every line, however many")
     check.add_argument(
         "--tolerance", type=_positive, default=1e-9, metavar="SIZE",
         help="largest scaled residual that passes (default 1e-9)",
@@ -132,6 +151,34 @@ def _add_check_options(check: argparse.ArgumentParser) -> None:
         help="do not solve the rebuilt dual (default: where it is about as quick)",
     )  # fmt: skip
     check.set_defaults(second_route="if quick")
+
+
+def _add_line_options(check: argparse.ArgumentParser) -> None:
+    for kind in ("row", "column"):
+        check.add_argument(
+            f"--{kind}", dest="lines", action="append", default=[], metavar="NAME",
+            type=partial(_line, kind),
+            help=f"print the ledger of this {kind} instead of the report; may be repeated",
+        )  # fmt: skip
+    check.add_argument(
+        "--families", action="store_true",
+        help="print families of lines, grouped by what their names begin with",
+    )  # fmt: skip
+
+
+def _line(kind: str, name: str) -> tuple[str, str]:
+    return kind, name
+
+
+def _require_one_form(parser: argparse.ArgumentParser, options: argparse.Namespace) -> None:
+    """Ledgers, families and JSON are three different things to print."""
+    if options.format == "json" and (options.lines or options.families):
+        parser.error(
+            "--row, --column and --families are printed as text or markdown; "
+            "json has every line anyway"
+        )
+    if options.lines and options.families:
+        parser.error("expected --row and --column, or --families, got both")
 
 
 def _positive(text: str) -> float:

@@ -9,10 +9,12 @@ import argparse
 import os
 import shlex
 import sys
+from collections.abc import Callable
 from pathlib import Path
 
 from lpview import cli
 from lpview.blocks import InputError, Reading, read_model, read_model_bytes, write_blocks
+from lpview.blocks.mistakes import Mistake, quoted
 from lpview.decimals import number_text
 from lpview.examination import (
     Examination,
@@ -22,6 +24,8 @@ from lpview.examination import (
     SecondRoute,
     examine,
 )
+from lpview.model import LinearProgram
+from lpview.report.document import Document
 from lpview.run import Method, SolveSettings, Watch
 from lpview.scaling import NotRepresentableError
 
@@ -33,7 +37,7 @@ def check(options: argparse.Namespace) -> list[int]:
     for source in options.models:
         try:
             found.append(_examined(source, options))
-            statuses.append(_status(found[-1]))
+            statuses.append(status(found[-1]))
         except (InputError, NotRepresentableError) as error:
             sys.stderr.write(f"{error}\n")
             statuses.append(cli.USAGE)
@@ -70,12 +74,25 @@ def _examined(source: str, options: argparse.Namespace) -> Examination:
     from lpview.solver import solve
 
     reading, data = _read(source)
+    _lines(reading.model, source, options)
     if data is not None:
         source = _saved(data, options.output)
     request = _request(source, options)
     watch = Watch()
     label = reading.model.name
     return watched(lambda: examine(reading, request, solve, watch), watch, label)
+
+
+def examined_quietly(
+    source: str, options: argparse.Namespace, watch: Watch, say: Callable[[str], None]
+) -> Examination:
+    """The same for the screen: no output; ``say`` hears which step has begun."""
+    from lpview.solver import solve
+
+    say("reading")
+    reading = read_model(source)
+    say("solving")
+    return examine(reading, _request(source, options), solve, watch)
 
 
 def _saved(data: bytes, output: str | None) -> str:
@@ -120,7 +137,8 @@ def _command(source: str, options: argparse.Namespace) -> str:
     return shlex.join(words)
 
 
-def _status(found: Examination) -> int:
+def status(found: Examination) -> int:
+    """The exit status of one examination."""
     if isinstance(found, Optimal):
         return cli.DONE if found.passed else cli.FAILED
     return cli.NO_OPTIMUM if isinstance(found, NoOptimum) else cli.NOT_ESTABLISHED
@@ -132,10 +150,41 @@ def _rendered(found: list[Examination], options: argparse.Namespace) -> str:
 
         return json.render(found if len(options.models) > 1 else found[0])
     from lpview.report import markdown, text
-    from lpview.report.check import report
 
     render = markdown.render if options.format == "markdown" else text.render
-    return "\n".join(render(report(one, options.full)) for one in found)
+    return "\n".join(render(_document(one, options)) for one in found)
+
+
+def _document(found: Examination, options: argparse.Namespace) -> Document:
+    """What was asked for: the report, its families, or the ledgers of some lines."""
+    if options.families:
+        from lpview.report.families import families_report
+
+        return families_report(found, options.full)
+    if options.lines:
+        from lpview.report.ledger import ledger_report
+
+        return ledger_report(found, _lines(found.head.model, "", options), options.full)
+    from lpview.report.check import report
+
+    return report(found, options.full)
+
+
+def _lines(lp: LinearProgram, source: str, options: argparse.Namespace) -> list[int]:
+    """Numbers of the lines asked for, as in `lpview.kkt`; raises `InputError`."""
+    index = {"row": (lp.rows, 0), "column": (lp.columns, lp.m)}
+    lines, mistakes = [], []
+    for kind, name in options.lines:
+        names, first = index[kind]
+        if name in names:
+            lines.append(first + names.index(name))
+            continue
+        expected = f"the name of a {kind}"
+        wrong = Mistake(source, expected, quoted(name), field=f"--{kind}", name=name, choices=names)
+        mistakes.append(wrong)
+    if mistakes:
+        raise InputError(mistakes)
+    return lines
 
 
 def _write(text: str, output: str | None) -> None:

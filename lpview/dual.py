@@ -24,9 +24,9 @@ from dataclasses import dataclass
 import numpy as np
 from scipy.sparse import csr_array
 
-from lpview.answer import Answer
-from lpview.model import LinearProgram, ModelError, Sense, Vector, frozen_odd
-from lpview.sides import NOWHERE, Exact, Index, OneSided, fold, one_sided
+from lpview.answer import Answer, Basis, LineStatus
+from lpview.model import LinearProgram, ModelError, Odd, Sense, Vector, frozen_odd
+from lpview.sides import NOWHERE, Exact, Index, Mask, OneSided, fold, one_sided
 
 __all__ = [
     "DualProgram",
@@ -34,6 +34,7 @@ __all__ = [
     "Prices",
     "build_dual",
     "dual",
+    "dual_answer",
     "fold",
     "one_sided",
     "original_answer",
@@ -79,7 +80,6 @@ def dual(form: OneSided | LinearProgram) -> LinearProgram:
     # Minimizing, a row without an upper side is `>=` and its variable y >= 0.
     at_least, at_most = (lp.row_upper == np.inf, lp.row_lower == -np.inf)[::turn]
     below, above = (lp.lower == -np.inf, lp.upper == np.inf)[::turn]
-    cost_odd = lp.odd.get("c", {})
     return LinearProgram(
         name=f"dual of {lp.name}",
         sense=lp.sense.other,
@@ -92,15 +92,7 @@ def dual(form: OneSided | LinearProgram) -> LinearProgram:
         lower=np.where(at_least, 0.0, -np.inf),
         upper=np.where(at_most, 0.0, np.inf),
         offset=lp.offset,
-        odd=frozen_odd(
-            {
-                "c": {**lp.odd.get("row_lower", {}), **lp.odd.get("row_upper", {})},
-                "A": _transposed_odd(lp),
-                "row_lower": {j: exact for j, exact in cost_odd.items() if below[j]},
-                "row_upper": {j: exact for j, exact in cost_odd.items() if above[j]},
-                "offset": lp.odd.get("offset", {}),
-            }
-        ),
+        odd=_dual_odd(lp, below, above),
     )
 
 
@@ -142,6 +134,67 @@ def original_answer(pair: DualProgram, answer: Answer) -> Answer:
     return Answer(x=answer.y.copy(), y=found.y, z=found.z, basis=None)
 
 
+def dual_answer(pair: DualProgram, answer: Answer) -> Answer:
+    """An answer to the dual, from an answer to the original model; solves nothing.
+
+    The dual's plan is the model's prices: a row's dual value goes to the side that
+    its sign names (to its only side, whatever the sign), a column's reduced cost to
+    the row of the bound that its sign names; a bound of 0, and one that does not
+    exist, has no such row, and what is left there is the slack of the column's row
+    in the dual. The dual values of the dual are the model's plan. A row without
+    sides has no place, so its price, which should be 0, is dropped.
+
+    ``answer.z`` should be ``c - A'y`` to the last digit: the dual's rows are as far
+    from it as those reduced costs are. `original_answer` is the way back.
+    """
+    places, values = pair.form.places, np.zeros(pair.program.n)
+    low, high = places.row_lower, places.row_upper
+    low, high = np.where(low == NOWHERE, high, low), np.where(high == NOWHERE, low, high)
+    lower_sign = pair.form.program.sense.sign
+    for price, at_low, at_high in (
+        (answer.y, low, high),
+        (answer.z, places.lower, places.upper),
+    ):
+        place = np.where(lower_sign * price > 0, at_low, at_high)
+        stands = place != NOWHERE
+        values[place[stands]] = price[stands]
+    return Answer(
+        x=values,
+        y=answer.x.copy(),
+        z=pair.program.c - pair.form.program.A @ answer.x,
+        basis=None if answer.basis is None else _dual_basis(pair, answer.basis),
+    )
+
+
+def _dual_basis(pair: DualProgram, basis: Basis) -> Basis | None:
+    """The basis of the dual that belongs to a basis of the model.
+
+    In the form a line of the model that is held at a row of the form leaves that
+    row nonbasic and all else basic; a column held at a bound of 0, or free, is
+    itself nonbasic. The dual's basic lines are the form's nonbasic ones. None where
+    a row without sides is nonbasic: without it the form has a basic line too many.
+    """
+    places, program = pair.form.places, pair.program
+    low = np.where(places.row_lower == NOWHERE, places.row_upper, places.row_lower)
+    high = np.where(places.row_upper == NOWHERE, places.row_lower, places.row_upper)
+    row_at = np.where(basis.row == LineStatus.UPPER, high, low)
+    column_at = np.where(basis.column == LineStatus.UPPER, places.upper, places.lower)
+    row_held, column_held = basis.row != LineStatus.BASIC, basis.column != LineStatus.BASIC
+    if (row_held & (row_at == NOWHERE)).any():
+        return None
+    basic = np.zeros(program.n, dtype=bool)
+    basic[row_at[row_held]] = True
+    basic[column_at[column_held & (column_at != NOWHERE)]] = True
+    itself = column_held & (column_at == NOWHERE)
+    at_zero = np.where(program.upper == 0.0, LineStatus.UPPER, LineStatus.FREE)
+    resting = np.where(program.lower == 0.0, LineStatus.LOWER, at_zero)
+    side = np.where(np.isfinite(program.row_lower), LineStatus.LOWER, LineStatus.UPPER)
+    return Basis(
+        column=np.where(basic, LineStatus.BASIC, resting).astype(np.int8),
+        row=np.where(itself, LineStatus.BASIC, side).astype(np.int8),
+    )
+
+
 def _at(values: Vector, place: Index) -> Vector:
     """The values at ``place``, and 0 where that is `NOWHERE`."""
     # The entry put at the end is the one that NOWHERE, the last index, finds.
@@ -151,8 +204,20 @@ def _at(values: Vector, place: Index) -> Vector:
 
 def _transposed(lp: LinearProgram) -> csr_array:
     by_column = lp.A_by_column
-    return csr_array(
-        (by_column.data, by_column.indices, by_column.indptr), shape=(lp.n, lp.m)
+    return csr_array((by_column.data, by_column.indices, by_column.indptr), shape=(lp.n, lp.m))
+
+
+def _dual_odd(lp: LinearProgram, below: Mask, above: Mask) -> Odd:
+    """Exact numbers of the dual, whose row ``j`` has the sides ``below`` and ``above``."""
+    costs = lp.odd.get("c", {})
+    return frozen_odd(
+        {
+            "c": {**lp.odd.get("row_lower", {}), **lp.odd.get("row_upper", {})},
+            "A": _transposed_odd(lp),
+            "row_lower": {j: exact for j, exact in costs.items() if below[j]},
+            "row_upper": {j: exact for j, exact in costs.items() if above[j]},
+            "offset": lp.odd.get("offset", {}),
+        }
     )
 
 

@@ -57,7 +57,7 @@ class Residuals:
     @property
     def relative(self) -> Vector:
         """``absolute / term``, and 0 where the residual is 0."""
-        with np.errstate(divide="ignore", invalid="ignore"):
+        with np.errstate(divide="ignore", invalid="ignore", over="ignore"):
             return np.where(self.absolute == 0.0, 0.0, self.absolute / self.term)
 
 
@@ -142,7 +142,10 @@ class FileNumbers:
         """``c - A'y`` as a pair, and the largest of ``|c_j|`` and ``|a_ij y_i|``."""
         A = self.lp.A_by_column
         sums, term = _products(self.by_column, y[A.indices], A.indptr)
-        return accurate.minus(self.c, sums), np.maximum(term, np.abs(self.lp.c))
+        term = np.maximum(term, np.abs(self.lp.c))
+        price = accurate.minus(self.c, sums)
+        rounding = np.abs(price[0]) <= term * 2.0**-95
+        return (np.where(rounding, 0.0, price[0]), np.where(rounding, 0.0, price[1])), term
 
     def objective(self, x: Vector) -> tuple[float, float]:
         """``c'x + offset`` as a pair."""
@@ -197,7 +200,8 @@ def measure(
             # Rows have no such condition, but are counted like all lines.
             rows_too = (np.zeros(lp.m), off), (np.zeros(lp.m), price_term)
             residuals[Condition.STATIONARITY] = Residuals(*map(np.concatenate, rows_too))
-    return Measurement(rows, columns, primal[0], dual[0], gap, _at_stake(rows, columns), residuals)
+        stake = _at_stake(rows, columns)
+    return Measurement(rows, columns, primal[0], dual[0], gap, stake, residuals)
 
 
 def _side(

@@ -28,6 +28,8 @@ class Limits:
     """Coefficients of this size and below are dropped."""
     wary: float
     """Rows with coefficients of this size and below are rescaled where that helps."""
+    ample: float
+    """Rows with coefficients above this size are rescaled where that helps."""
     largest: float
     """Coefficients above this size are refused."""
     infinite: float
@@ -60,9 +62,7 @@ class Scaling:
             return lp
         A = lp.A.copy()
         rows = np.repeat(np.arange(lp.m), np.diff(A.indptr))
-        A.data = np.ldexp(
-            A.data, (self.row[rows] + self.column[A.indices]).astype(np.int32)
-        )
+        A.data = np.ldexp(A.data, (self.row[rows] + self.column[A.indices]).astype(np.int32))
         return replace(
             lp,
             c=_shift(lp.c, self.column + self.cost),
@@ -129,7 +129,7 @@ def _row_exponents(lp: LinearProgram, limits: Limits) -> Exponents:
         starts = A.indptr[:-1][filled]
         small[filled] = np.minimum.reduceat(np.abs(A.data), starts)
         large[filled] = np.maximum.reduceat(np.abs(A.data), starts)
-    bad = (small <= limits.wary) | (large > limits.largest)
+    bad = (small <= limits.wary) | (large > limits.ample)
     middle = -np.rint(np.log2(small) / 2 + np.log2(large) / 2)
     exponents[bad] = middle[bad]
     over = np.flatnonzero(np.ldexp(side, exponents.astype(np.int32)) >= limits.infinite)

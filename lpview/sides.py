@@ -102,12 +102,7 @@ def fold(program: LinearProgram, places: Places) -> LinearProgram:
     coefficients from the row of its lower side. Raises `ModelError` if the rows
     and columns of ``program`` cannot be those of the form.
     """
-    if (program.m, program.n) != _shape(places):
-        raise ModelError(
-            f"{program.name}: expected the {_shape(places)[0]} rows and "
-            f"{_shape(places)[1]} columns of the one-sided form of {places.name}, "
-            f"got {program.m} and {program.n}"
-        )
+    _require_shape(program, places)
     kept = np.where(places.row_lower != NOWHERE, places.row_lower, places.row_upper)
     left_out = np.flatnonzero(kept == NOWHERE)
     kept[left_out] = program.m + np.arange(left_out.size)
@@ -218,10 +213,14 @@ def _new_name(wanted: str, taken: set[str]) -> str:
     return name
 
 
-def _shape(places: Places) -> tuple[int, int]:
-    """Rows and columns of the form."""
+def _require_shape(program: LinearProgram, places: Places) -> None:
     ends = (places.row_lower, places.row_upper, places.lower, places.upper)
-    return 1 + max(int(end.max(initial=NOWHERE)) for end in ends), places.lower.size
+    m, n = 1 + max(int(end.max(initial=NOWHERE)) for end in ends), places.lower.size
+    if (program.m, program.n) != (m, n):
+        raise ModelError(
+            f"{program.name}: expected the {m} rows and {n} columns of the one-sided "
+            f"form of {places.name}, got {program.m} and {program.n}"
+        )
 
 
 def _taken(sides: Vector, place: Index, otherwise: Vector) -> Vector:

@@ -25,8 +25,11 @@ from lpview.scaling import Limits, NotRepresentableError, Scaling, scaling_for
 SMALL_COEFFICIENT = 1e-12
 """The smallest threshold that HiGHS accepts for dropping coefficients."""
 
-LIMITS = Limits(smallest=SMALL_COEFFICIENT, wary=1e-9, largest=1e15, infinite=1e20)
-"""What HiGHS keeps as it is (its documented defaults, and the threshold above)."""
+LIMITS = Limits(smallest=SMALL_COEFFICIENT, wary=1e-9, ample=1e10, largest=1e15, infinite=1e20)
+"""What HiGHS keeps as it is (its documented defaults, and the threshold above).
+
+Rows beyond 1e10 are rescaled too: with coefficients near 1e13 it was seen to call a bounded
+model unbounded."""
 
 _STATUS = highspy.HighsModelStatus
 _CLAIMS = {

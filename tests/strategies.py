@@ -146,8 +146,7 @@ def _arrays(
     """Keyword arguments of `LinearProgram` from numbers in row-major order."""
     values = {part: np.array([v for v, _ in ns], float) for part, ns in fields.items()}
     odd = {
-        part: {k: o for k, (_, o) in enumerate(ns) if o is not None}
-        for part, ns in fields.items()
+        part: {k: o for k, (_, o) in enumerate(ns) if o is not None} for part, ns in fields.items()
     }
     matrix = np.zeros(shape)
     matrix.flat[places] = values["A"]

@@ -20,7 +20,9 @@ OUTER = ("lpview.__main__", "lpview.cli", "lpview.commands", "lpview.progress")
 OUTER_PACKAGES = ("lpview.report", "lpview.screen")
 """What talks to people. Every other module is numeric, a new one too."""
 
-RUNTIME = {"numpy", "scipy", "highspy", "textual"}
+RUNTIME = {"numpy", "scipy", "highspy", "textual", "rich"}
+"""What is installed with the package; rich is the part of textual that draws lines."""
+
 TOP_LEVEL = {"README.md", "DEVELOPERS.md", "pyproject.toml", "lpview", "tests", "models"}
 BUILD_PRODUCTS = {"build", "dist", "lpview.egg-info"}
 

@@ -10,6 +10,7 @@ from __future__ import annotations
 from collections.abc import Mapping, Sequence
 from dataclasses import dataclass, field
 from fractions import Fraction
+from functools import lru_cache
 from types import MappingProxyType
 
 import numpy as np
@@ -93,9 +94,10 @@ def read_numbers(cells: Cells, words: Mapping[str, float] = NO_WORDS) -> Numbers
     numbers = parse_all(cells.texts, words)
     for place, expected in numbers.wrong.items():
         infinite = cells.texts[place].lstrip("+-").casefold() in ("inf", "infinity")
-        if infinite and not words:
+        if infinite and not any(words):
             expected = "a finite number"
-        cells.wrong(place, " or ".join([expected, *filter(None, words)]))
+        *options, last = expected, *filter(None, words)
+        cells.wrong(place, f"{', '.join(options)} or {last}" if options else last)
     return numbers
 
 
@@ -179,6 +181,7 @@ def _most_decimals(texts: Sequence[str]) -> int:
     return most
 
 
+@lru_cache(maxsize=1024)  # fractions such as 1/3 come often and cost much
 def _parse(text: str) -> tuple[float, Fraction | None]:
     if len(text) > MOST_DIGITS and (
         len(text) > 4 * MOST_DIGITS or significant_digits(text) > MOST_DIGITS

@@ -63,28 +63,31 @@ def read_coefficients(
         Place of every row and column; None when they are not known. Then, and
         after any other mistake, the matrix may be empty.
     """
-    row_index, column_index = rows or {}, columns or {}
     read = [_triplets if block.fixed else _wide for block in blocks]
     parts = [get(b, rows, columns) for get, b in zip(read, blocks, strict=True)]
-    n, keys = len(column_index), [np.zeros(0, np.int64)]
-    for part in parts:
-        if part.rows is None or part.columns is None:
-            keys = [np.zeros(0, np.int64)]
-            parts = []
-            break
-        keys.append(part.rows * n + part.columns)
-    key = np.concatenate(keys)
-    values = np.concatenate([np.zeros(0), *(part.numbers.values for part in parts)])
+    shape = len(rows or ()), len(columns or ())
+    empty = sum(part.empty for part in parts)
+    decimals = max((part.numbers.decimals for part in parts), default=0)
+    key = _keys(parts, shape[1])
+    if key is None:
+        return Coefficients(csr_array(shape), {}, empty, decimals)
+    values = np.concatenate([part.numbers.values for part in parts])
     order = _order(key)
     if order is not None:
         key, values = key[order], values[order]
-        _tell_repeated_pairs(parts, order, key, list(row_index), list(column_index))
-    return Coefficients(
-        A=_matrix(key, values, (len(row_index), n)),
-        odd=_odd(parts, values, order),
-        empty=sum(part.empty for part in parts),
-        decimals=max((part.numbers.decimals for part in parts), default=0),
-    )
+        _tell_repeated_pairs(parts, order, key, list(rows or ()), list(columns or ()))
+    matrix = _matrix(key, values, shape)
+    return Coefficients(matrix, _odd(parts, values, order), empty, decimals)
+
+
+def _keys(parts: Sequence[_Entries], n: int) -> Places | None:
+    """``row * n + column`` of all coefficients; None when some are not known."""
+    keys = [
+        part.rows * n + part.columns
+        for part in parts
+        if part.rows is not None and part.columns is not None
+    ]
+    return np.concatenate(keys) if keys and len(keys) == len(parts) else None
 
 
 def _triplets(block: Block, rows: Index | None, columns: Index | None) -> _Entries:
@@ -99,14 +102,15 @@ def _wide(block: Block, rows: Index | None, columns: Index | None) -> _Entries:
     names, width = block.header[1:], len(block.header)
     header = Cells(block, ("column",), [block.header_line] * len(names), names)
     row_names = Cells(block, ("row",), block.lines, block.flat[::width])
-    tell_repeated([header])
-    tell_repeated([row_names])
+    repeated = tell_repeated([header]) | tell_repeated([row_names])
     column_places = look_up(header, columns, "a column of [c]")
     row_places = look_up(row_names, rows, "a row of [b]")
     given = filled(block.flat)
     given = given[given % width != 0]  # the first cell of a line is a name
     texts = take(block.flat, given)
     cells = Cells(block, block.header, block.lines, texts, given.tolist())
+    if repeated:
+        row_places = None
     if row_places is not None and column_places is not None:
         row_places = row_places[given // width]
         column_places = column_places[given % width - 1]

@@ -28,6 +28,8 @@ LONGEST_NAME = 8
 
 _BLANKS = " \t\v\f\x1c\x1d\x1e\x1f"
 _WIDE_BLANK = re.compile("[\x85\xa0\u1680\u2000-\u200a\u2028\u2029\u202f\u205f\u3000]")
+_MOST_BLANKS = 32
+_QUOTE = ord('"')
 _POWERS = 10.0 ** np.arange(16)
 
 
@@ -55,9 +57,13 @@ class EvenCells(Sequence[str]):
         return self.data[self.starts[place] : self.ends[place]].tobytes().decode()
 
     def __iter__(self) -> Iterator[str]:
+        if not len(self):
+            return iter(())
         data = self.data.tobytes()
-        for start, end in zip(self.starts.tolist(), self.ends.tolist(), strict=True):
-            yield data[start:end].decode()
+        spans = zip(self.starts.tolist(), self.ends.tolist(), strict=True)
+        # No cell holds a line feed, so that one decoding does for all.
+        joined = b"\n".join([data[start:end] for start, end in spans])
+        return iter(joined.decode().split("\n"))
 
     def take(self, places: Places) -> EvenCells:
         """The texts at some places."""
@@ -104,34 +110,67 @@ class EvenCells(Sequence[str]):
 def even_cells(body: str, width: int, separator: str) -> EvenCells | None:
     """The cells of lines that all have ``width`` cells and no peculiarity.
 
-    None for a body with quotes, comments, lines of another length or lines whose
-    first cell is empty, which may be blank ones.
+    None for a body with separators or quotes inside quotes, with lines of another
+    length, or with lines whose first cell is empty, which may be blank ones. Empty
+    cells behind the others are left out where every line has as many. Comments must
+    have been taken out.
     """
-    if '"' in body or "#" in body or not (body.isascii() or not _WIDE_BLANK.search(body)):
+    if not body.isascii() and _WIDE_BLANK.search(body):
         return None
+    padded = max(width, body.partition("\n")[0].count(separator) + 1)
+    cells = _split(body, padded, separator)
+    cells = cells and _trimmed(cells, body, separator)
+    if cells and '"' in body:
+        cells = _unquoted(cells, body.count('"'))
+        cells = cells and _trimmed(cells, body, separator)
+    if cells is None:
+        return None
+    is_filled = (cells.starts < cells.ends).reshape(-1, padded)
+    if not is_filled[:, 0].all() or is_filled[:, width:].any():
+        return None
+    if padded > width:
+        return cells.take(np.arange(len(cells)).reshape(-1, padded)[:, :width].ravel())
+    return cells
+
+
+def _split(body: str, width: int, separator: str) -> EvenCells | None:
+    """What stands between separators and line ends; None for uneven lines."""
     text = body.encode()
     data = np.frombuffer(text + bytes(LONGEST_DECIMAL), dtype=np.uint8)
     inner = data[: len(text)]
     stops = np.append(np.flatnonzero((inner == ord(separator)) | (inner == 10)), len(text))
-    count = body.count("\n") + 1
-    if len(stops) != count * width or (data[stops[width - 1 : -1 : width]] != 10).any():
+    lines = body.count("\n") + 1
+    if len(stops) != lines * width or (data[stops[width - 1 : -1 : width]] != 10).any():
         return None
-    cells = EvenCells(data, np.append(0, stops[:-1] + 1), stops)
-    if any(blank in body for blank in _BLANKS if blank != separator):
-        cells = _trimmed(cells)
-    empty_first = cells.starts[::width] == cells.ends[::width]
-    return None if empty_first.any() else cells
+    return EvenCells(data, np.append(0, stops[:-1] + 1), stops)
 
 
-def _trimmed(cells: EvenCells) -> EvenCells:
+def _trimmed(cells: EvenCells, body: str, separator: str) -> EvenCells | None:
+    """The cells without blanks around them; None where there are very many."""
+    blanks = [blank for blank in _BLANKS if blank != separator and blank in body]
+    if not blanks:
+        return cells
     is_blank = np.zeros(256, dtype=bool)
-    is_blank[[ord(blank) for blank in _BLANKS]] = True
+    is_blank[[ord(blank) for blank in blanks]] = True
     starts, ends = cells.starts.copy(), cells.ends.copy()
-    while (move := is_blank[cells.data[starts]] & (starts < ends)).any():
-        starts += move
-    while (move := is_blank[cells.data[ends - 1]] & (starts < ends)).any():
-        ends -= move
-    return EvenCells(cells.data, starts, ends)
+    for _ in range(_MOST_BLANKS):
+        left = is_blank[cells.data[starts]] & (starts < ends)
+        right = is_blank[cells.data[ends - 1]] & (starts < ends - left)
+        starts += left
+        ends -= right
+        if not (left.any() or right.any()):
+            return EvenCells(cells.data, starts, ends)
+    return None
+
+
+def _unquoted(cells: EvenCells, quotes: int) -> EvenCells | None:
+    """The cells without the quotes around them; None if there are other quotes."""
+    starts, ends = cells.starts, cells.ends
+    quoted = (cells.data[starts] == _QUOTE) & (cells.data[ends - 1] == _QUOTE)
+    quoted &= ends - starts > 1
+    if 2 * np.count_nonzero(quoted) != quotes:
+        return None
+    return EvenCells(cells.data, starts + quoted, ends - quoted)
 
 
 def take(texts: Sequence[str], places: Places) -> Sequence[str]:
@@ -150,8 +189,10 @@ def filled(texts: Sequence[str]) -> Places:
 
 def find(texts: Sequence[str], index: Mapping[str, int]) -> Places | None:
     """The value of ``index`` for every text; None when it lacks any of them."""
+    if not len(texts):
+        return np.zeros(0, dtype=np.int64)
     words = texts.words() if isinstance(texts, EvenCells) else None
-    if words is not None:
+    if words is not None and index:
         return _find_words(words, index)
     try:
         return np.fromiter(map(index.__getitem__, texts), np.int64, len(texts))
@@ -160,14 +201,13 @@ def find(texts: Sequence[str], index: Mapping[str, int]) -> Places | None:
 
 
 def _find_words(words: NDArray[np.uint64], index: Mapping[str, int]) -> Places | None:
-    known = {name.encode(): place for name, place in index.items()}
-    short = [name for name in known if len(name) <= LONGEST_NAME]
-    if not short or not len(words):
-        return None if len(words) else np.zeros(0, dtype=np.int64)
-    table = np.array(short, dtype=f"S{LONGEST_NAME}").view(">u8").astype(np.uint64)
-    order = np.argsort(table)
-    table = table[order]
-    place = np.minimum(np.searchsorted(table, words), len(table) - 1)
-    if (table[place] != words).any():
+    names = "\n".join(index).encode().split(b"\n")
+    short = np.fromiter(map(len, names), np.int64, len(names)) <= LONGEST_NAME
+    if not short.any():
         return None
-    return np.array([known[name] for name in short], dtype=np.int64)[order][place]
+    known = np.array(names, dtype=f"S{LONGEST_NAME}")[short].view(">u8").astype(np.uint64)
+    places = np.fromiter(index.values(), np.int64, len(index))[short]
+    order = np.argsort(known)
+    known, places = known[order], places[order]
+    found = np.minimum(np.searchsorted(known, words), len(known) - 1)
+    return places[found] if np.array_equal(known[found], words) else None

@@ -40,6 +40,25 @@ def filled_lines(
             yield number, cells
 
 
+def without_comments(source: Source, text: str, first: int) -> tuple[list[str], list[int]]:
+    """The lines of ``text`` that are neither blank nor a comment, and their numbers."""
+    lines = text.split("\n")
+    blanks = source.separator + '" \t\u00a0'
+    kept = [
+        place
+        for place, line in enumerate(lines)
+        if line.strip(blanks) and not ("#" in line and _is_any_comment(source, line))
+    ]
+    return [lines[place] for place in kept], [first + place for place in kept]
+
+
+def _is_any_comment(source: Source, line: str) -> bool:
+    """Whether a line is a comment, in quotes or not."""
+    if _is_comment_line(line, source.separator):
+        return True
+    return not quote_problem(source, line) and is_comment(source.cells(line)[0])
+
+
 def _is_comment_line(line: str, separator: str) -> bool:
     """Whether a line is a comment, before any quote in it is given a meaning."""
     start = line.lstrip()

@@ -54,15 +54,21 @@ def read_names(parts: Sequence[Cells]) -> tuple[str, ...]:
     return names
 
 
-def tell_repeated(parts: Sequence[Cells]) -> None:
-    """Tell of every name that stood in these cells before."""
+def tell_repeated(parts: Sequence[Cells]) -> bool:
+    """Tell of every name that stood in these cells before; whether there is any."""
     first: dict[str, int] = {}
+    repeated = False
     for cells in parts:
         for place, name in enumerate(cells.texts):
+            line = cells.line(place)
             if name in first:
-                cells.wrong(place, "every name once", f"it is on line {first[name]} too")
+                here = first[name] == line
+                advice = "" if here else f"it is on line {first[name]} too"
+                cells.wrong(place, "every name once", advice)
+                repeated = True
             elif name:
-                first[name] = cells.line(place)
+                first[name] = line
+    return repeated
 
 
 def look_up(cells: Cells, index: Index | None, known: str) -> NDArray[np.int64] | None:
@@ -90,8 +96,8 @@ def look_up(cells: Cells, index: Index | None, known: str) -> NDArray[np.int64] 
         if name not in index:
             unknown.setdefault(name, []).append(cells.line(place))
     for name, lines in unknown.items():
-        advice = f"the same on {len(lines) - 1} more lines" if len(lines) > 1 else ""
-        problem = Problem(known, quoted(name), advice)
+        times = f" on {len(lines)} lines" if len(lines) > 1 else ""
+        problem = Problem(known, quoted(name) + times)
         choices = tuple(index) if name else ()
         cells.block.place.unknown(lines[0], cells.fields[0], problem, name, choices)
     return None

@@ -91,7 +91,7 @@ def _wide(block: Block) -> _Costs:
         problem = Problem("a line of costs below the header", "no line")
         block.place.wrong(block.header_line, "line", problem)
     elif block.flat[0] in ERROR_CELLS:
-        Cells(block, block.header[:1], lines, block.flat[:1]).wrong(0, "a word")
+        Cells(block, block.header[:1], lines, block.flat[:1]).wrong(0, "a label")
     header = Cells(block, ("column",), [block.header_line] * len(names), names)
     return _costs(header, Cells(block, names, lines, block.flat[1:width]))
 

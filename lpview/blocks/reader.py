@@ -15,7 +15,7 @@ from lpview.blocks.coefficients import Coefficients, read_coefficients
 from lpview.blocks.ends import Piece, Rows, joined, read_bounds, read_rows
 from lpview.blocks.layout import BLOCKS
 from lpview.blocks.mistakes import Mistake, Mistakes, Problem, printable
-from lpview.blocks.names import Index, names_alike
+from lpview.blocks.names import Index, name_problem, names_alike
 from lpview.blocks.objective import Objective, read_objective, read_offset
 from lpview.blocks.source import Source, from_bytes, read_path
 from lpview.blocks.structure import Block, read_blocks
@@ -121,7 +121,7 @@ def _blocks_by_name(sources: Sequence[Source], mistakes: Mistakes) -> dict[str, 
                 continue
             other = first[key]
             where = "" if other.source is source else f" of {printable(other.source.file)}"
-            problem = Problem("this block once", f"it again, as on line {other.line}{where}")
+            problem = Problem("this block once", f"it again after line {other.line}{where}")
             block.place.wrong(block.line, "block line", problem)
     broken = {mistake.block for mistake in mistakes.found}
     for name, kind in BLOCKS.items():
@@ -131,10 +131,11 @@ def _blocks_by_name(sources: Sequence[Source], mistakes: Mistakes) -> dict[str, 
 
 
 def _index(names: Sequence[str], blocks: Sequence[Block], broken: Collection[str]) -> Index | None:
-    """Place of every name; None when a block that gives names is missing or broken."""
+    """Place of every name; None when not all of them can be known."""
     index = {name: place for place, name in enumerate(names)}
+    wrong = any(name_problem(name) for name in index if not name or name[0] == "#")
     complete = blocks and blocks[0].name not in broken and len(index) == len(names)
-    return index if complete else None
+    return index if complete and not wrong else None
 
 
 def _model(contents: _Contents, name: str) -> LinearProgram:

@@ -1,7 +1,7 @@
 """Text to blocks: block lines, headers, and the cells below them.
 
-The body of most blocks is split in one go by `even_cells`; one with comments,
-quotes, blank lines or mistakes goes line by line, which also makes the messages.
+The body of most blocks is split in one go by `even_cells`; one with peculiar quotes
+or with mistakes goes line by line, which also makes the messages.
 """
 
 from __future__ import annotations
@@ -17,6 +17,7 @@ from lpview.blocks.lines import (
     quote_problem,
     separator_problem,
     width_problem,
+    without_comments,
 )
 from lpview.blocks.mistakes import Mistakes, Place, Problem, quoted
 from lpview.blocks.source import Source
@@ -82,7 +83,9 @@ def _parts(source: Source, place: Place) -> list[_Part]:
         if quote_problem(source, line):
             continue  # the block that holds the line will say so
         cells = source.cells(line)
-        if _is_block_line(cells, inside=bool(starts)):
+        # Within a block of one line nothing else may stand, so nothing is data.
+        table = bool(starts) and starts[-1][2][0] != "[offset]"
+        if _is_block_line(cells, table):
             starts.append((start, end + 1, cells))
     before = text[: starts[0][0]] if starts else text
     _check_beginning(source, before, starts[0][2][0] if starts else "", place)
@@ -106,19 +109,22 @@ def _bracket_lines(text: str) -> Iterator[tuple[int, int]]:
         bracket = text.find("[", end)
 
 
-def _is_block_line(cells: list[str], inside: bool) -> bool:
+def _is_block_line(cells: list[str], in_table: bool) -> bool:
     """Whether a line whose first cell may be in brackets begins a block.
 
-    Names in brackets are allowed, so that a line with further cells is one only
-    where its block takes an argument, and then not where it reads as a cost.
+    Names in brackets are allowed in a table, so that a line with further cells is a
+    block line there only where its block takes an argument, and then not where it
+    reads as a cost; or where it goes on with the header, by mistake.
     """
     rest = [cell for cell in cells[1:] if cell]
     name = cells[0] if rest else cells[0].rstrip(_ANY_SEPARATOR)
     if not (name.startswith("[") and name.endswith("]")):
         return False
-    if not rest or not inside:
+    if not rest or not in_table:
         return True
     kind = BLOCKS.get(name[1:-1])
+    if kind is not None and owner(tuple(rest)) == kind.name:
+        return True
     if kind is None or not kind.argument or len(rest) > 1 or not cells[1]:
         return False
     return kind.name != "c" or rest[0][0] not in "0123456789+-."
@@ -148,7 +154,9 @@ def _block(source: Source, part: _Part, mistakes: Mistakes) -> Block | None:
     extra = next(filter(None, part.cells[2 if kind.argument else 1 :]), "")
     if extra:
         expected = f"nothing after {kind.line if kind.argument else name}"
-        place.wrong(part.line, "block line", Problem(expected, quoted(extra)))
+        advice = "the header is a line of its own" if kind.headers else ""
+        place.wrong(part.line, "block line", Problem(expected, quoted(extra), advice))
+        return None
     argument = part.cells[1] if kind.argument and len(part.cells) > 1 else ""
     block = Block(source, place, part.line, argument)
     if kind.headers:
@@ -200,16 +208,17 @@ def _with_cells(block: Block, text: str) -> Block:
     source, width = block.source, len(block.header)
     first = block.header_line + 1 + len(text) - len(text.lstrip("\n"))
     body = text.strip("\n")
-    if not body:
-        return block
-    even = even_cells(body, width, source.separator)
-    if even is not None:
-        lines = range(first, first + len(even) // width)
-        return replace(block, flat=even, lines=lines)
+    lines: Sequence[int] = range(first, first + body.count("\n") + 1)
+    even = None if "#" in body else even_cells(body, width, source.separator)
+    if even is None:
+        kept, lines = without_comments(source, body, first)
+        even = even_cells("\n".join(kept), width, source.separator) if kept else None
+    if even is not None or not lines:
+        return replace(block, flat=even or (), lines=lines)
     flat: list[str] = []
     numbers: list[int] = []
     for number, cells in filled_lines(source, body, first, block.place):
-        problem = width_problem(source, cells, width)
+        problem = len(cells) != width and width_problem(source, cells, width)
         if problem:
             block.place.wrong(number, "line", problem)
         else:

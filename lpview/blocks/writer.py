@@ -29,7 +29,7 @@ def write_blocks(lp: LinearProgram) -> str:
     together = "[offset]" in lp.columns
     blocks = [_objective(lp, columns, together)]
     if lp.offset != 0:
-        blocks.append([f"[offset],{number_text(lp.offset, _odd(lp, 'offset').get(0))}"])
+        blocks.append(["[offset]," + _texts(np.array([lp.offset]), _odd(lp, "offset"))[0]])
     blocks += [_coefficients(lp, columns, rows), _rows(lp, rows)]
     bounds = [] if together else list(_bounds(lp, columns))
     if bounds:
@@ -62,7 +62,9 @@ def _odd(lp: LinearProgram, field: str) -> Mapping[int, Fraction]:
 
 def _texts(values: Vector, odd: Mapping[int, Fraction]) -> list[str]:
     """Numbers as text, in the form that may be read back."""
-    texts = [number_text(value) for value in values.tolist()]
+    distinct, which = np.unique(values, return_inverse=True)
+    known = [number_text(value) for value in distinct.tolist()]
+    texts = [known[k] for k in which.tolist()]
     for place, exact in odd.items():
         text = number_text(float(values[place]), exact)
         if significant_digits(text) > MOST_DIGITS:
@@ -97,21 +99,13 @@ def _rows(lp: LinearProgram, rows: list[str]) -> list[str]:
     below, above = np.isinf(lp.row_lower), np.isinf(lp.row_upper)
     if (lp.is_equality | (below != above)).all():
         relations = np.where(below, "<=", np.where(above, ">=", "=")).tolist()
-        sides = [
-            high if r == "<=" else low for r, low, high in zip(relations, lower, upper, strict=True)
-        ]
+        ends = zip(below.tolist(), lower, upper, strict=True)
+        sides = [high if no_lower else low for no_lower, low, high in ends]
         lines = map(",".join, zip(rows, relations, sides, strict=True))
         return ["[b]", "row,relation,rhs", *lines]
-    return ["[b]", "row,lower,upper", *_two_sided(rows, lower, upper)]
-
-
-def _two_sided(rows: list[str], lower: list[str], upper: list[str]) -> Iterator[str]:
-    for row, low, high in zip(rows, lower, upper, strict=True):
-        if (low, high) == ("-inf", "inf"):
-            # With empty cells a row called "[x]" would be a block line.
-            yield f"{row},none,none"
-        else:
-            yield f"{row},{low.replace('-inf', '')},{high.replace('inf', '')}"
+    # Missing sides are spelled, or a row called "[x]" might read as a block line.
+    lines = map(",".join, zip(rows, lower, upper, strict=True))
+    return ["[b]", "row,lower,upper", *lines]
 
 
 def _bounds(lp: LinearProgram, columns: list[str]) -> Iterator[str]:

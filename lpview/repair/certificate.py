@@ -7,7 +7,8 @@ dual objective is positive: no plan can then exist, since a plan would bound it 
 line stays within its ends while the objective improves.
 
 Both are measured by the same check as an optimum (:mod:`lpview.kkt`), on the
-numbers of the file, and judged at the same scaled tolerance.
+numbers of the file, and judged at the same tolerance: a plan scaled, multipliers and
+rays relative to their terms, since these have no size of their own.
 """
 
 from __future__ import annotations
@@ -32,7 +33,8 @@ class Farkas:
     contradiction: float
     """What the multipliers add up to: 0 would have to be at least this, > 0."""
     misplaced: float
-    """Largest scaled size of a multiplier whose side is infinite; 0 is flawless."""
+    """Largest size, over its largest term, of a multiplier whose side is infinite; 0
+    is flawless. Relative and not scaled, so that no small coefficient passes as 0."""
     reach: float
     """No plan exists whose values, in total size over the columns with such a
     multiplier, stay below this; ``inf`` where there is none."""
@@ -53,7 +55,7 @@ class Ray:
     violation: float
     """Largest scaled residual of the plan's feasibility."""
     drift: float
-    """Largest scaled residual of the ray: how fast a line leaves its ends."""
+    """Largest relative residual of the ray: how fast a line leaves its ends."""
     accepted: bool
     """Whether the check accepts both at the tolerance."""
 
@@ -78,13 +80,30 @@ def recession(lp: LinearProgram, reach: float = np.inf) -> LinearProgram:
     )
 
 
+NOISE = 1e-12
+"""Parts of a certificate this small beside its largest are first taken for rounding."""
+
+
 def check_farkas(lp: LinearProgram, y: Vector, tolerance: float) -> Farkas:
     """Measure and judge Farkas multipliers; ``y`` may have any size but 0."""
-    size = float(np.max(np.abs(y), initial=0.0))
-    y = y / size if size > 0 else np.zeros(lp.m)
+    cleared = _farkas(lp, _cleared(_of_size_one(y)), tolerance)
+    return cleared if cleared.accepted else _farkas(lp, _of_size_one(y), tolerance)
+
+
+def _of_size_one(values: Vector) -> Vector:
+    size = float(np.max(np.abs(values), initial=0.0))
+    return values / size if 0 < size < np.inf else np.zeros_like(values)
+
+
+def _cleared(values: Vector) -> Vector:
+    """Without the solver's rounding, which would else be judged as if it were meant."""
+    return np.where(np.abs(values) <= NOISE, 0.0, values)
+
+
+def _farkas(lp: LinearProgram, y: Vector, tolerance: float) -> Farkas:
     found = measure(without_costs(lp), np.zeros(lp.n), y)
     misplaced = found.residuals[Condition.DUAL]
-    worst = float(np.max(misplaced.scaled, initial=0.0))
+    worst = float(np.max(misplaced.relative, initial=0.0))
     total = float(np.sum(misplaced.absolute))
     terms = max(1.0, *(float(np.max(np.abs(t), initial=0.0)) for t in _terms(found)))
     reach = found.dual_objective / total if total > 0 else np.inf
@@ -105,13 +124,16 @@ def _terms(found: Measurement) -> tuple[Vector, Vector]:
 
 def check_ray(lp: LinearProgram, x: Vector, direction: Vector, tolerance: float) -> Ray:
     """Measure and judge a plan and a ray; ``direction`` may have any size but 0."""
-    size = float(np.max(np.abs(direction), initial=0.0))
-    direction = direction / size if size > 0 else np.zeros(lp.n)
+    cleared = _ray(lp, x, _cleared(_of_size_one(direction)), tolerance)
+    return cleared if cleared.accepted else _ray(lp, x, _of_size_one(direction), tolerance)
+
+
+def _ray(lp: LinearProgram, x: Vector, direction: Vector, tolerance: float) -> Ray:
     no_prices = np.zeros(lp.m)
     plan = measure(lp, x, no_prices).residuals[Condition.PRIMAL]
     along = measure(recession(lp), direction, no_prices)
     violation = float(np.max(plan.scaled, initial=0.0))
-    drift = float(np.max(along.residuals[Condition.PRIMAL].scaled, initial=0.0))
+    drift = float(np.max(along.residuals[Condition.PRIMAL].relative, initial=0.0))
     rate = along.primal_objective
     terms = max(1.0, float(np.max(np.abs(lp.c * direction), initial=0.0)))
     improves = -lp.sense.sign * rate > tolerance * terms

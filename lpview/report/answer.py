@@ -21,12 +21,15 @@ MOST_FLAGGED = 10
 _PASSED = {True: "passed", False: "FAILED", None: "holds by definition"}
 
 
-def body(found: Optimal, full: bool) -> tuple[Block, ...]:
-    """Everything between the verdict and the provenance."""
+def body(found: Optimal, full: bool, tables: tuple[Table, ...] = ()) -> tuple[Block, ...]:
+    """Everything between the verdict and the provenance.
+
+    ``tables``, if any, stand in place of the zero-slack rows.
+    """
     return (
         _conditions(found),
         Facts(_objectives(found) + _routes(found)),
-        _zero_slack_rows(found, full),
+        *(tables or (_zero_slack_rows(found, full),)),
         Facts(_flags(found, full)),
     )
 
@@ -94,7 +97,7 @@ def _routes(found: Optimal) -> tuple[tuple[str, str], ...]:
     basis, dual = found.basis_route, found.dual_route
     if isinstance(basis, BasisRoute):
         condition = residual(basis.prices.condition)
-        first = f"done: {_agreement(found, basis.difference)}; condition {condition}"
+        first = f"done: {_agreement(found, basis.difference)}; condition {condition} after scaling"
     else:
         first = f"not done: {basis.reason}"
     if isinstance(dual, DualSolved):

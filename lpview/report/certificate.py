@@ -47,7 +47,7 @@ def _reach(farkas: Farkas) -> str:
     if np.isinf(farkas.reach):
         return "Every multiplier names a side or bound that exists, so no plan at all is left."
     return (
-        f"Rounding in the multipliers (scaled {residual(farkas.misplaced)}) leaves open only "
+        f"Rounding in the multipliers (relative {residual(farkas.misplaced)}) leaves open only "
         f"plans whose values add up to {number(farkas.reach)} and more."
     )
 
@@ -84,7 +84,7 @@ def _unbounded(lp: LinearProgram, ray: Ray, full: bool) -> tuple[Block, ...]:
         Sentence(
             f"From a feasible plan (scaled violation {residual(ray.violation)}), each step along "
             f"the ray changes the objective by {number(ray.rate)} and keeps every line within "
-            f"its sides and bounds (scaled drift {residual(ray.drift)})."
+            f"its sides and bounds (relative drift {residual(ray.drift)})."
         ),
         _moving(lp, ray.x, ray.direction, full),
     )

@@ -16,7 +16,7 @@ from lpview.examination import (
 from lpview.model import LinearProgram
 from lpview.repair.search import Infeasible
 from lpview.report import answer, certificate
-from lpview.report.document import Block, Command, Document, Facts, Sentence
+from lpview.report.document import Block, Command, Document, Facts, Sentence, Table
 from lpview.report.names import safe
 from lpview.report.numbers import count, residual
 
@@ -26,13 +26,16 @@ CAUTION = (
 """What every report ends with."""
 
 
-def report(found: Examination, full: bool = False) -> Document:
-    """The report of an examination; at most 40 lines of text unless ``full``."""
+def report(found: Examination, full: bool = False, tables: tuple[Table, ...] = ()) -> Document:
+    """The report of an examination; at most 40 lines of text unless ``full``.
+
+    ``tables``, if any, stand in place of an answer's zero-slack rows.
+    """
     head = found.head
     return (
         Sentence(f"{_title(head)}: {verdict(found)}", strong=True),
         Sentence("; ".join([shape(head.model), *_notes(head)])),
-        *_body(found, full),
+        *_body(found, full, tables),
         Facts(_provenance(head)),
         Command("reproduce", head.request.command),
         Sentence(CAUTION),
@@ -53,7 +56,7 @@ def verdict(found: Examination) -> str:
         return f"optimal, verified: every condition passed at {tolerance} scaled"
     if isinstance(found, NoOptimum):
         if isinstance(found.certificate, Infeasible):
-            return "infeasible, certified: no plan satisfies every line"
+            return "infeasible, certified: the lines contradict each other"
         return "unbounded, certified: the objective improves without limit"
     if isinstance(found, NotEstablished):
         return "not established: the solver's claim could not be confirmed"
@@ -88,9 +91,9 @@ def _notes(head: Head) -> list[str]:
     return ["noticed while reading: " + ", ".join(parts)] if parts else []
 
 
-def _body(found: Examination, full: bool) -> tuple[Block, ...]:
+def _body(found: Examination, full: bool, tables: tuple[Table, ...]) -> tuple[Block, ...]:
     if isinstance(found, Optimal):
-        return answer.body(found, full)
+        return answer.body(found, full, tables)
     if isinstance(found, NoOptimum):
         return certificate.body(found, full)
     if isinstance(found, NotEstablished):

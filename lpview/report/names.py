@@ -40,8 +40,8 @@ def _cells(character: str) -> int:
     return 2 if unicodedata.east_asian_width(character) in "WF" else 1
 
 
-def fitted(name: str, cells: int = LONGEST) -> str:
-    """A safe name, cut with an ellipsis where it takes more than ``cells``."""
+def fitted(name: str, cells: int = LONGEST, more: str = "…") -> str:
+    """A safe name, cut and ended with ``more`` where it takes more than ``cells``."""
     name = safe(name)
     if width(name) <= cells:
         return name
@@ -52,7 +52,7 @@ def fitted(name: str, cells: int = LONGEST) -> str:
         if used > cells:
             break
         kept += character
-    return kept + "…"
+    return kept + more
 
 
 def line_kind_and_name(lp: LinearProgram, line: int) -> tuple[str, str]:

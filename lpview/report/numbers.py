@@ -36,3 +36,12 @@ def _tidy(text: str) -> str:
     """Exponents without padding: ``1e-9`` for ``1e-09``, ``1e20`` for ``1e+20``."""
     mantissa, mark, exponent = text.partition("e")
     return f"{mantissa}e{int(exponent)}" if mark else text
+
+
+def fitted_number(value: float, cells: int) -> str:
+    """A number in at most so many cells: it loses digits before it is ever cut."""
+    for digits in range(PRINTED_DIGITS, 0, -1):
+        text = number(value, digits)
+        if len(text) <= cells:
+            return text
+    return text

@@ -1,0 +1,143 @@
+"""The fast ways give what the plain ways give."""
+
+from __future__ import annotations
+
+from fractions import Fraction
+
+import numpy as np
+import pytest
+from hypothesis import example, given
+from hypothesis import strategies as st
+
+from lpview.blocks.cells import parse_all
+from lpview.blocks.even import EvenCells, even_cells, filled, find, take
+from lpview.decimals import NumberError, exact_value, parse
+
+BODIES = st.text(alphabet='ab1,;\t\n "#é\u00a0\u2003\x1c', max_size=24)
+
+DIGITS = st.text(alphabet="0123456789", max_size=18)
+DECIMALS = st.tuples(
+    st.sampled_from(["", "-", "+"]),
+    DIGITS,
+    st.sampled_from(["", "."]),
+    DIGITS,
+    st.sampled_from(["", "", "e3", "E-5", "e+30", "e-310", "e320"]),
+).map("".join)
+ANYTHING = st.one_of(
+    DECIMALS,
+    st.text(alphabet="0123456789+-.eE_/ naif", max_size=6),
+    st.sampled_from(["1/3", "-2/4", "nan", "inf", "1_0", "١", "1e5", "", "-0", "0x1"]),
+)
+
+
+def lines_of(body: str, separator: str) -> list[list[str]] | None:
+    """The trimmed cells of all lines; None where quotes hold more than a plain cell."""
+    lines = [[c.strip() for c in line.split(separator)] for line in body.split("\n")]
+    for line in lines:
+        for place, cell in enumerate(line):
+            if len(cell) > 1 and cell[0] == cell[-1] == '"' and '"' not in cell[1:-1]:
+                line[place] = cell[1:-1].strip()
+            elif '"' in cell:
+                return None
+    return lines
+
+
+def as_even(texts: list[str]) -> EvenCells:
+    cells = even_cells("\n".join(f"x,{text}" for text in texts), 2, ",")
+    assert cells is not None
+    return cells[1::2]
+
+
+@given(BODIES, st.integers(1, 3), st.sampled_from(",;\t"))
+@example("a, 1\nb ,2", 2, ",")
+@example("é,1\na,2", 2, ",")
+@example("\u00a0a,1", 2, ",")
+@example(",1", 2, ",")
+@example('"a", "1 "\n" b",2', 2, ",")
+@example('"a,1"\nb,2', 2, ",")
+@example('a""b,1', 2, ",")
+@example("a,1,,\nb,2, ,", 2, ",")
+@example("a,1,,\nb,2,,3", 2, ",")
+@example("a,1,,\nb,2,", 2, ",")
+@example("a,1" + 99 * " ", 2, ",")
+def test_even_cells_are_the_split_lines(body: str, width: int, separator: str) -> None:
+    cells = even_cells(body, width, separator)
+    lines = lines_of(body, separator)
+    if lines and len({len(line) for line in lines}) == 1:
+        lines = [line[:width] if not any(line[width:]) else line for line in lines]
+    regular = lines and all(len(line) == width and line[0] for line in lines)
+    if cells is not None:
+        assert regular
+        assert list(cells) == [cell for line in lines or [] for cell in line]
+        assert [cells[k] for k in range(len(cells))] == list(cells)
+    elif body.isascii() and "   " not in body:
+        assert not regular
+
+
+def plainly(texts: list[str]) -> tuple[list[float], dict[int, Fraction], dict[int, str]]:
+    values, odd, wrong = [], {}, {}
+    for place, text in enumerate(texts):
+        try:
+            value, exact = parse(text)
+        except NumberError as error:
+            value, exact, wrong[place] = 0.0, None, str(error)
+        values.append(value)
+        if exact is not None:
+            odd[place] = exact
+    return values, odd, wrong
+
+
+@given(st.lists(ANYTHING, max_size=4), st.booleans())
+def test_numbers_are_those_of_parse(texts: list[str], trimmed: bool) -> None:
+    texts = [text.strip() for text in texts]
+    for numbers in (parse_all(texts), parse_all(as_even(texts)) if texts else None):
+        if numbers is not None:
+            found = numbers.values.tolist(), dict(numbers.odd), dict(numbers.wrong)
+            assert found == plainly(texts)
+            assert not np.signbit(numbers.values[numbers.values == 0]).any()
+
+
+@given(st.lists(DECIMALS, min_size=1, max_size=4))
+def test_no_digit_is_lost(texts: list[str]) -> None:
+    numbers = parse_all(as_even(texts))
+    for place, text in enumerate(texts):
+        if place not in numbers.wrong:
+            value = exact_value(numbers.values[place], numbers.odd.get(place))
+            assert value == Fraction(text)
+
+
+@given(st.lists(st.sampled_from(["1.5", "-0.25", "7", ".125", "3.", "1/3", "1.00"])))
+def test_the_most_decimals(texts: list[str]) -> None:
+    most = max((len(text.partition(".")[2]) for text in texts), default=0)
+    assert parse_all(texts).decimals == most
+    if texts:
+        assert parse_all(as_even(texts)).decimals == most
+
+
+def test_words_stand_for_numbers_and_empty_ones_are_counted() -> None:
+    texts = ["1", "", "None", "1/3", "x", ""]
+    for cells in (texts, as_even(texts)):
+        numbers = parse_all(cells, {"": 5.0, "none": -np.inf})
+        assert numbers.values.tolist() == [1, 5, -np.inf, 1 / 3, 0, 5]
+        assert numbers.odd == {3: Fraction(1, 3)}
+        assert numbers.wrong == {4: "a number"}
+        assert numbers.empty == 2
+
+
+NAMES = st.text(alphabet="abé1", min_size=1, max_size=10)
+
+
+@given(st.lists(NAMES, max_size=5), st.lists(NAMES, unique=True, max_size=5))
+def test_find_is_a_dictionary(texts: list[str], names: list[str]) -> None:
+    index = {name: 7 * place for place, name in enumerate(names)}
+    expected = [index[t] for t in texts] if {*texts} <= {*names} else None
+    for cells in (texts, as_even(texts)) if texts else (texts,):
+        found = find(cells, index)
+        assert (None if found is None else found.tolist()) == expected
+
+
+@pytest.mark.parametrize("kind", [list, as_even])
+def test_filled_and_taken_texts(kind: type[list]) -> None:
+    texts = kind(["a", "", "b", "c", ""])
+    assert filled(texts).tolist() == [0, 2, 3]
+    assert list(take(texts, np.array([3, 0]))) == ["c", "a"]
