@@ -76,9 +76,20 @@ def read_path(path: str | Path) -> list[Source]:
             sources.append(read_file(file, block))
         except InputError as error:
             mistakes += error.mistakes
+    mistakes += _misnamed(path)
     if mistakes:
         raise InputError(mistakes)
     return sources
+
+
+def _misnamed(path: str | Path) -> list[Mistake]:
+    """Files that would be read if their names had other capitals: never lost unsaid."""
+    wanted = {name.casefold(): name for name in FOLDER_FILES}
+    return [
+        Mistake(os.path.join(path, name), f"the name {meant}", "other capitals", advice="rename it")  # noqa: PTH118
+        for name in sorted(os.listdir(path))  # noqa: PTH208 - only the names matter
+        if (meant := wanted.get(name.casefold(), name)) != name
+    ]
 
 
 def read_file(file: str, block: str = "") -> Source:

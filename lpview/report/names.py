@@ -10,20 +10,22 @@ LONGEST = 40
 """Cells of a terminal that a name may take in a table."""
 
 _HARMFUL = frozenset(("Cc", "Cf", "Cs", "Co", "Cn", "Zl", "Zp"))
+_SELECTORS = frozenset((*range(0xFE00, 0xFE10), *range(0xE0100, 0xE01F0)))
+"""Invisible marks that choose a picture of another width, in some terminals only."""
 _NO_WIDTH = frozenset(("Mn", "Me"))
 
 
 def safe(name: str) -> str:
     """A name with control, direction and other invisible characters spelled out."""
-    if name.isprintable():
+    if name.isascii() and name.isprintable():
         return name
     return "".join(_spelled(character) for character in name)
 
 
 def _spelled(character: str) -> str:
-    if unicodedata.category(character) not in _HARMFUL:
-        return character
     code = ord(character)
+    if unicodedata.category(character) not in _HARMFUL and code not in _SELECTORS:
+        return character
     return f"\\x{code:02x}" if code < 256 else f"\\u{code:04x}"
 
 
@@ -35,8 +37,8 @@ def width(text: str) -> int:
 
 
 def _cells(character: str) -> int:
-    if unicodedata.category(character) in _NO_WIDTH:
-        return 0
+    if unicodedata.category(character) in _NO_WIDTH or "\u1160" <= character <= "\u11ff":
+        return 0  # combining marks, and the later parts of a composed Korean syllable
     return 2 if unicodedata.east_asian_width(character) in "WF" else 1
 
 

@@ -8,7 +8,7 @@ from pathlib import Path
 from tempfile import TemporaryDirectory
 
 import pytest
-from hypothesis import given
+from hypothesis import given, settings
 from hypothesis import strategies as st
 
 from lpview.blocks import InputError, read_model, read_model_bytes, write_blocks
@@ -98,11 +98,13 @@ def wide(lp: LinearProgram) -> Blocks:
     ]
 
 
+@settings(deadline=None)
 @given(linear_programs(), DIALECTS)
 def test_every_dialect_reads_the_same(lp: LinearProgram, dialect: Dialect) -> None:
     assert identical(read_model_bytes(dialect.data(blocks_of(lp)), "x").model, lp)
 
 
+@settings(deadline=None)
 @given(linear_programs(nasty_names=False), DIALECTS)
 def test_wide_blocks_read_the_same(lp: LinearProgram, dialect: Dialect) -> None:
     reading = read_model_bytes(dialect.data(wide(lp)), "x")
@@ -111,6 +113,7 @@ def test_wide_blocks_read_the_same(lp: LinearProgram, dialect: Dialect) -> None:
     assert reading.notes.empty_costs == int((lp.c == 0).sum())
 
 
+@settings(deadline=None)
 @given(linear_programs(), DIALECTS, st.data())
 def test_a_mistake_is_found_on_its_line(
     lp: LinearProgram, dialect: Dialect, data: st.DataObject
@@ -127,6 +130,7 @@ def test_a_mistake_is_found_on_its_line(
         assert [mistake.line for mistake in caught.value.mistakes] == [here]
 
 
+@settings(deadline=None)
 @given(linear_programs(max_rows=3, max_columns=3), st.lists(DIALECTS, min_size=3, max_size=3))
 def test_a_folder_reads_the_same(lp: LinearProgram, dialects: list[Dialect]) -> None:
     blocks = blocks_of(lp)

@@ -99,6 +99,25 @@ def test_bounds_beside_the_costs_and_elsewhere() -> None:
     assert lp.A.shape == (0, 3)
 
 
+def test_names_may_look_like_block_lines() -> None:
+    lp = read(
+        "[c],minimize\ncolumn,cost,lower,upper\n[c],1,,\n[offset],2,0,\n"
+        "[A]\nrow,column,coefficient\n[x],[c],3\n[b],[offset],4\n"
+        "[b]\nrow,lower,upper\n[x],1,2\n[b],,7\n[bounds]\ncolumn,lower,upper\n[c],,5\n"
+    ).model
+    assert (lp.columns, lp.rows) == (("[c]", "[offset]"), ("[x]", "[b]"))
+    assert lp.A.toarray().tolist() == [[3, 0], [0, 4]]
+    assert lp.upper.tolist() == [5, INF]
+    assert lp.row_upper.tolist() == [2, 7]
+
+
+def test_a_column_called_offset_may_lack_its_lower_bound() -> None:
+    costs = "[c],minimize\ncolumn,cost,lower,upper\n[offset],2,none,none\n"
+    rows = "[A]\nrow,column,coefficient\n[b]\nrow,lower,upper\n[offset],,5\n"
+    lp = read(costs + rows).model
+    assert (lp.rows, lp.row_upper.tolist(), lp.offset) == (("[offset]",), [5], 0)
+
+
 def test_explicit_zeros_are_dropped_and_odd_numbers_stay_in_place() -> None:
     lp = read(
         "[c],minimize\ncolumn,cost\nx,1\ny,1\n[b]\nrow,relation,rhs\nr,>=,0\ns,>=,0\n"

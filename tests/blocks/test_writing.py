@@ -7,7 +7,7 @@ from fractions import Fraction
 
 import numpy as np
 import pytest
-from hypothesis import given
+from hypothesis import given, settings
 from scipy.sparse import csr_array
 
 from lpview.blocks import InputError, name_problem, read_model_bytes, write_blocks
@@ -61,6 +61,7 @@ def again(lp: LinearProgram) -> LinearProgram:
     return read_model_bytes(write_blocks(lp).encode(), lp.name).model
 
 
+@settings(deadline=None)
 @given(linear_programs())
 def test_write_then_read_is_identical_and_stable(lp: LinearProgram) -> None:
     text = write_blocks(lp)

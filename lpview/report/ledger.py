@@ -1,0 +1,130 @@
+"""The ledger of some lines as a document: terms, totals, and what they mean."""
+
+from __future__ import annotations
+
+import math
+from collections.abc import Sequence
+
+import numpy as np
+
+from lpview.examination import Examination, Optimal
+from lpview.ledger import Ledger, ledger
+from lpview.marks import Flag
+from lpview.model import LinearProgram
+from lpview.report import asking
+from lpview.report.check import CAUTION, report, verdict
+from lpview.report.document import Block, Command, Document, Facts, Sentence, Table
+from lpview.report.ledger_words import meaning
+from lpview.report.names import fitted, safe
+from lpview.report.numbers import count, number, residual
+
+MOST_TERMS = 20
+"""Terms shown unless the full ledger is asked for; the others as their sum."""
+
+
+def ledger_report(found: Examination, lines: Sequence[int], full: bool = False) -> Document:
+    """The ledgers of lines numbered as in `lpview.kkt`, and how to get them again.
+
+    ``found.head.request.command`` is the command of the check; the options that name
+    the lines are added to it. An examination without an answer has no ledgers, and
+    the usual report says why.
+    """
+    found = asking(found, *line_options(found.head.model, lines))
+    if not isinstance(found, Optimal):
+        return report(found, full)
+    head = found.head
+    return (
+        Sentence(f"{safe(head.request.source)}: {verdict(found)}", strong=True),
+        *(block for line in lines for block in ledger_blocks(found, line, full)),
+        Command("reproduce", head.request.command),
+        Sentence(CAUTION),
+    )
+
+
+def line_options(lp: LinearProgram, lines: Sequence[int]) -> list[str]:
+    """``--row NAME`` or ``--column NAME`` for each line, as words of a command."""
+    words: list[str] = []
+    for line in lines:
+        option, name = ("--row", lp.rows[line]) if line < lp.m else ("--column", "")
+        name = name or lp.columns[line - lp.m]
+        # A name that begins like an option has to be tied to its own.
+        words += [f"{option}={name}"] if name.startswith("-") else [option, name]
+    return words
+
+
+def ledger_blocks(found: Optimal, line: int, full: bool = False) -> tuple[Block, ...]:
+    """The ledger of one line: its terms, what they add up to, what that means."""
+    entry = ledger(found, line)
+    return (
+        _terms(found.head.model, entry, full),
+        Facts(_totals(entry)),
+        *map(Sentence, meaning(found, entry)),
+    )
+
+
+def heading(entry: Ledger) -> str:
+    """The line with its limits, as ``row heat <= 300`` or ``column tomato 0 to 40``."""
+    kind = "row" if entry.is_row else "column"
+    return f"{kind} {fitted(entry.name)} {limits(entry)}"
+
+
+def limits(entry: Ledger) -> str:
+    """Sides or bounds: ``<= 300``, ``>= 0``, ``= 5``, ``0 to 40``, ``without limits``."""
+    low, high = entry.lower, entry.upper
+    if low == high and not entry.paired:
+        return f"= {number(low)}"
+    if math.isinf(low) and math.isinf(high):
+        return "without sides" if entry.is_row else "free"
+    if math.isinf(low):
+        return f"<= {number(high)}"
+    return f">= {number(low)}" if math.isinf(high) else f"{number(low)} to {number(high)}"
+
+
+def _terms(lp: LinearProgram, entry: Ledger, full: bool) -> Table:
+    terms = entry.terms
+    names = lp.columns if entry.is_row else lp.rows
+    total = terms.product.size
+    shown = total if full else min(total, MOST_TERMS)
+    rows = [
+        (fitted(names[k]), *map(number, numbers))
+        for k, *numbers in zip(
+            terms.partner[:shown].tolist(),
+            terms.coefficient[:shown].tolist(),
+            terms.factor[:shown].tolist(),
+            terms.product[:shown].tolist(),
+            strict=True,
+        )
+    ]
+    if shown < total:
+        rest = math.fsum(terms.product[shown:]) if np.isfinite(terms.product).all() else math.nan
+        rows.append((f"and {total - shown} more", "", "", number(rest)))
+    header = (
+        ("column", "coefficient", "value", "coefficient x value")
+        if entry.is_row
+        else ("row", "coefficient", "dual value", "coefficient x dual value")
+    )
+    begin = "" if entry.is_row else f", cost {number(entry.cost)} less"
+    title = f"{heading(entry)}{begin}: {count(total, 'term')}"
+    return Table(title, header, tuple(rows), (False, True, True, True))
+
+
+def _totals(entry: Ledger) -> tuple[tuple[str, str], ...]:
+    product = residual(entry.complementarity)
+    flags = ", ".join(flag.value for flag in entry.flags) or "none"
+    if entry.status is None:
+        flags += f" ({Flag.DEGENERATE.value} is not known without a basis)"
+    if entry.is_row:
+        numbers = (
+            ("row value", number(entry.value)),
+            ("slack", number(entry.slack)),
+            ("dual value", number(entry.price)),
+            ("slack times dual value", product),
+        )
+    else:
+        numbers = (
+            ("reduced cost", number(entry.price)),
+            ("value", number(entry.value)),
+            ("distance to its nearest bound", number(entry.slack)),
+            ("distance times reduced cost", product),
+        )
+    return (*numbers, ("flags", flags))

@@ -1,0 +1,107 @@
+"""Every key of the screen, chosen once: bindings, footer, help page, palette and README."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+from textual.binding import Binding, BindingType
+
+from lpview.marks import Flag
+
+
+@dataclass(frozen=True)
+class Key:
+    """One key and what it does."""
+
+    key: str
+    """As the widget library spells it; several are separated by commas."""
+    action: str
+    """Name of the action, with arguments where it takes any."""
+    words: str
+    """What it does, in the words of help page, palette and README."""
+    group: str
+    """Heading under which the help page lists it."""
+    footer: str = ""
+    """Short words for the footer; empty where it is not shown there."""
+
+
+FILTER_FLAGS = tuple(Flag)
+"""Flags in the order of their number keys, from 1 on."""
+
+MOVE, FIND, SHOW, TAKE = "Moving", "Finding", "Showing", "Taking away"
+
+KEYS = (
+    Key("tab", "next_pane", "next pane: constraints, variables, ledger", MOVE, "Pane"),
+    Key("shift+tab", "previous_pane", "previous pane", MOVE),
+    Key("enter", "follow", "follow the link to the other table, or open a family", MOVE, "Follow"),
+    Key("left_square_bracket", "back", "back through the lines visited", MOVE, "Back"),
+    Key("right_square_bracket", "forward", "forward through the lines visited", MOVE),
+    Key("full_stop", "next_flagged", "next flagged line", MOVE),
+    Key("comma", "previous_flagged", "previous flagged line", MOVE),
+    Key("g", "go_to", "go to a line by its number", MOVE),
+    Key("slash", "search", "search names in this table: several words, any case", FIND, "Search"),
+    *(
+        Key(str(number), f"filter('{flag.name}')", f"only lines with: {flag.value}", FIND)
+        for number, flag in enumerate(FILTER_FLAGS, start=1)
+    ),
+    Key("0", "filter('')", "lines with any flag or none", FIND, "All"),
+    Key("s", "sort", "sort by the next column", FIND, "Sort"),
+    Key("r", "reverse", "reverse the order", FIND),
+    Key("l", "linked", "other table: only linked lines, or all with those lit up", FIND, "Linked"),
+    Key("f", "fold", "fold this table into families, or unfold it", SHOW, "Families"),
+    Key("c", "check", "the whole residual check, its worst lines as links", SHOW, "Check"),
+    Key("p", "picture", "picture of the sparsity pattern", SHOW, "Picture"),
+    Key("d", "turn", "turn the mirror: the dual program as the model, and back", SHOW, "Dual"),
+    Key("question_mark,f1", "help", "all keys on one page", SHOW, "Keys"),
+    Key("t", "ticket('text')", "save the check as text, and copy it", TAKE, "Ticket"),
+    Key("m", "ticket('markdown')", "save the check as Markdown, and copy it", TAKE),
+    Key("w", "copy_ledger", "save this line's ledger, and copy it", TAKE),
+    Key("escape", "leave", "stop the work, close, or clear search and filter", MOVE),
+    Key("q,ctrl+q,ctrl+c", "quit", "quit", MOVE, "Quit"),
+)
+
+
+def bindings() -> list[BindingType]:
+    """The table as bindings of the widget library."""
+    return [
+        Binding(key.key, key.action, key.footer or key.words, show=bool(key.footer)) for key in KEYS
+    ]
+
+
+_SPELLED = {
+    "left_square_bracket": "[",
+    "right_square_bracket": "]",
+    "full_stop": ".",
+    "comma": ",",
+    "slash": "/",
+    "question_mark": "?",
+    "plus": "+",
+    "minus": "-",
+    "equals_sign": "=",
+}
+
+
+def spelled(key: str) -> str:
+    """A key as a person reads it: ``[`` for ``left_square_bracket``."""
+    return " or ".join(_SPELLED.get(part, part) for part in key.split(","))
+
+
+def groups() -> list[tuple[str, list[tuple[str, str]]]]:
+    """Every key and its words by heading, those of the picture last."""
+    from lpview.screen.picture_screen import KEYS as PICTURE_KEYS
+
+    headings = dict.fromkeys(key.group for key in KEYS)
+    found = [
+        (heading, [(spelled(key.key), key.words) for key in KEYS if key.group == heading])
+        for heading in headings
+    ]
+    return [*found, ("In the picture", [(spelled(key), words) for key, _, words in PICTURE_KEYS])]
+
+
+def table() -> str:
+    """The table of keys in Markdown, as README.md shows it."""
+    lines = ["| key | what it does |", "| --- | --- |"]
+    for heading, keys in groups():
+        lines.append(f"| **{heading}** | |")
+        lines += [f"| `{key}` | {words} |" for key, words in keys]
+    return "\n".join(lines) + "\n"

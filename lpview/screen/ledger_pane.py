@@ -1,0 +1,119 @@
+"""The ledger: the terms of the selected line, what they leave, and what it means."""
+
+from __future__ import annotations
+
+from textwrap import wrap
+
+import numpy as np
+
+from lpview.examination import Optimal
+from lpview.ledger import Ledger, ledger
+from lpview.model import Vector
+from lpview.report.ledger import heading
+from lpview.report.ledger_words import meaning
+from lpview.report.names import fitted, width
+from lpview.report.numbers import fitted_number
+from lpview.screen.columns import NUMBER
+from lpview.screen.pane import CURSOR, HEADING, PLAIN, LinesPane, Runs
+from lpview.screen.spine import Glyphs
+from lpview.screen.view import Lines
+
+
+class LedgerPane(LinesPane):
+    """Terms first, the largest on top, then totals and sentences; terms are links."""
+
+    def __init__(self, found: Optimal, glyphs: Glyphs, **options: str | None) -> None:
+        super().__init__(**options)
+        self.found, self.glyphs = found, glyphs
+        self.entry: Ledger | None = None
+        self._totals: list[str] = []
+
+    def show(self, line: int) -> None:
+        """Show the ledger of a line numbered as in `lpview.kkt`; -1 shows none."""
+        self.entry = ledger(self.found, line) if line >= 0 else None
+        self.cursor = self.top = 0
+        self._wrap()
+        self.refresh()
+
+    def _wrap(self) -> None:
+        """Break totals and sentences at the pane's width."""
+        sentences = [] if self.entry is None else _closing(self.found, self.entry)
+        cells = max(self.size.width - 4, 20)
+        self._totals = [part for text in sentences for part in wrap(text, cells)]
+
+    def on_resize(self) -> None:
+        """Sentences break anew."""
+        self._wrap()
+        super().on_resize()
+
+    @property
+    def term_count(self) -> int:
+        """Terms of the line."""
+        return 0 if self.entry is None else int(self.entry.terms.partner.size)
+
+    @property
+    def line_count(self) -> int:
+        """Totals and sentences, and terms."""
+        return len(self._totals) + self.term_count
+
+    def partners(self) -> tuple[Lines, Vector]:
+        """Lines of the other table that share a coefficient, the largest term first."""
+        if self.entry is None:
+            return np.zeros(0, np.intp), np.zeros(0)
+        terms = self.entry.terms
+        return terms.partner.astype(np.intp), terms.coefficient
+
+    def partner_line(self, index: int) -> int | None:
+        """The line of a term, numbered as in `lpview.kkt`; None where there is no term."""
+        at = index - len(self._totals)
+        if self.entry is None or not self.term_count:
+            return None
+        local = int(self.entry.terms.partner[min(max(at, 0), self.term_count - 1)])
+        return local + self.found.head.model.m if self.entry.is_row else local
+
+    def heading(self, width_: int) -> list[Runs]:
+        """The line as a comparison, and where the cursor is."""
+        mark = self.glyphs.cursor if self.has_focus else " "
+        title = "no line" if self.entry is None else heading(self.entry)
+        place = f"{self.cursor + 1} of {self.line_count}" if self.line_count else ""
+        text = fitted(f"{mark} LEDGER  {title}", width_ - len(place) - 2, self.glyphs.more)
+        return [[(text + "  " + place, HEADING if self.has_focus else PLAIN)]]
+
+    def content(self, index: int, width_: int) -> Runs:
+        """A total or a sentence, or a term."""
+        style = PLAIN + CURSOR if index == self.cursor and self.has_focus else PLAIN
+        if index < len(self._totals):
+            return [(fitted(f"  {self._totals[index]}", width_, self.glyphs.more), style)]
+        return [(self._term(index - len(self._totals), width_), style)]
+
+    def _term(self, at: int, width_: int) -> str:
+        entry, lp = self.entry, self.found.head.model
+        assert entry is not None
+        terms = entry.terms
+        names = lp.columns if entry.is_row else lp.rows
+        cells = max(width_ - 3 * (NUMBER + 3) - 4, 8)
+        name = fitted(names[int(terms.partner[at])], cells, self.glyphs.more)
+        both = (terms.coefficient, terms.factor)
+        numbers = [fitted_number(float(part[at]), NUMBER) for part in both]
+        product = float(terms.product[at])
+        sign = "" if entry.is_row else "less "
+        shown = sign + fitted_number(product, NUMBER)
+        body = f"{numbers[0]:>{NUMBER}} x {numbers[1]:<{NUMBER}}{shown:>{NUMBER + 5}}"
+        return "  " + name + " " * max(cells - width(name), 0) + body
+
+
+def _closing(found: Optimal, entry: Ledger) -> list[str]:
+    """What the terms leave, in numbers and in words."""
+    number = fitted_number
+    if entry.is_row:
+        line = (
+            f"row value {number(entry.value, NUMBER)}, slack {number(entry.slack, NUMBER)}, "
+            f"dual value {number(entry.price, NUMBER)}, "
+            f"product {number(entry.complementarity, NUMBER)}"
+        )
+    else:
+        line = (
+            f"value {number(entry.value, NUMBER)}, cost {number(entry.cost, NUMBER)} "
+            f"less {number(entry.used, NUMBER)} = reduced cost {number(entry.price, NUMBER)}"
+        )
+    return [line, *meaning(found, entry)]
