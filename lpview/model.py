@@ -214,9 +214,7 @@ def _problem(lp: LinearProgram) -> str:
         return "A: expected sorted indices and no stored zero"
     if not (np.isfinite(lp.c).all() and np.isfinite(lp.offset)):
         return "c and offset: expected finite numbers"
-    return _ends_problem(
-        (("row", lp.row_lower, lp.row_upper), ("column", lp.lower, lp.upper))
-    )
+    return _ends_problem((("row", lp.row_lower, lp.row_upper), ("column", lp.lower, lp.upper)))
 
 
 def _ends_problem(pairs: Sequence[tuple[str, Vector, Vector]]) -> str:

@@ -21,9 +21,7 @@ def solve(lp: LinearProgram) -> Solved | Unsolved:
     wanted = lp.sense.sign * lp.c
     x = np.where(wanted > 0, lp.lower, np.where(wanted < 0, lp.upper, _nearest_to_zero(lp)))
     if not np.isfinite(x).all():
-        return Unsolved(
-            _run(Claim.UNBOUNDED, "a variable without the bound it is pushed to")
-        )
+        return Unsolved(_run(Claim.UNBOUNDED, "a variable without the bound it is pushed to"))
     column = np.full(lp.n, LineStatus.FREE, dtype=np.int8)
     column[x == lp.upper] = LineStatus.UPPER
     column[x == lp.lower] = LineStatus.LOWER
