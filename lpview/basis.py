@@ -187,6 +187,11 @@ def _to_one(line: Index, size: Vector, count: int) -> Vector:
     return scale
 
 
+def import_factorization() -> None:
+    """Import what `factor_basis` needs, which takes as long as many a solve."""
+    import scipy.sparse.linalg  # noqa: F401
+
+
 def _factors(scaled: csc_array) -> Any:
     if not scaled.shape[0]:
         return None

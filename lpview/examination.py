@@ -23,6 +23,7 @@ from lpview.basis import (
     SingularBasis,
     compare_prices,
     factor_basis,
+    import_factorization,
     matrix_prices,
 )
 from lpview.blocks import Notes, Reading, write_blocks
@@ -30,6 +31,7 @@ from lpview.decimals import PRINTED_DIGITS, printed
 from lpview.dual import build_dual, original_answer
 from lpview.kkt import Condition, FileNumbers, Measurement, measure
 from lpview.marks import Marks, mark
+from lpview.meanwhile import Meanwhile
 from lpview.model import LinearProgram
 from lpview.polish import Origin, OwnNumbers, Polished, is_rounding, polished, worst_failure
 from lpview.repair.search import Infeasible, Nothing, Unbounded, find_certificate
@@ -220,11 +222,12 @@ def examine(
     watch = watch or Watch()
     lp = reading.model
     ask = _within_time_limit(request.solve, solve, watch)
+    prepared = Meanwhile(lambda: _prepared(lp))
     result = ask(lp, request.solve)
-    sha256 = hashlib.sha256(write_blocks(lp).encode()).hexdigest()
+    sha256, numbers = prepared.result()
     head = Head(lp, reading.notes, sha256, request, result.run)
     if isinstance(result, Solved):
-        return _check(head, result.answer, ask)
+        return _check(head, result.answer, ask, numbers)
     if result.run.claim.is_stop:
         return Stopped(head)
     try:
@@ -240,7 +243,13 @@ def examine(
 
 def check_answer(head: Head, answer: Answer) -> Optimal:
     """Check an answer to ``head.model`` that needs no solving; solves nothing."""
-    return _check(head, answer, None)
+    return _check(head, answer, None, FileNumbers(head.model))
+
+
+def _prepared(lp: LinearProgram) -> tuple[str, FileNumbers]:
+    """What the check needs and no solver has a part in: digest, exact numbers, imports."""
+    import_factorization()
+    return hashlib.sha256(write_blocks(lp).encode()).hexdigest(), FileNumbers(lp)
 
 
 Ask = Callable[[LinearProgram, SolveSettings], Solved | Unsolved]
@@ -262,9 +271,8 @@ def _within_time_limit(settings: SolveSettings, solve: Solver, watch: Watch) -> 
     return ask
 
 
-def _check(head: Head, answer: Answer, ask: Ask | None) -> Optimal:
+def _check(head: Head, answer: Answer, ask: Ask | None, numbers: FileNumbers) -> Optimal:
     lp = head.model
-    numbers = FileNumbers(lp)
     matrix: BasisMatrix | SingularBasis = SingularBasis("is missing: the method ends without one")
     if answer.basis is not None:
         matrix = factor_basis(lp, answer.basis)

@@ -5,11 +5,11 @@ from __future__ import annotations
 import os
 import signal
 import sys
-import threading
 import time
 from collections.abc import Callable
-from typing import Generic, TypeVar
+from typing import TypeVar
 
+from lpview.meanwhile import Meanwhile
 from lpview.run import Watch
 
 QUIET_SECONDS = 1.0
@@ -20,30 +20,12 @@ TICK_SECONDS = 0.1
 Result = TypeVar("Result")
 
 
-class _Worker(threading.Thread, Generic[Result]):
-    """Runs one function and keeps its result or its exception."""
-
-    def __init__(self, work: Callable[[], Result]) -> None:
-        super().__init__(daemon=True)
-        self._work = work
-        self.results: list[Result] = []
-        self.error: BaseException | None = None
-
-    def run(self) -> None:
-        """Do the work."""
-        try:
-            self.results.append(self._work())
-        except BaseException as error:
-            self.error = error
-
-
 def watched(work: Callable[[], Result], watch: Watch, label: str) -> Result:
     """Do ``work``, showing progress on standard error where that is a terminal.
 
     The first Ctrl-C sets ``watch.stop`` and waits for the work to end by itself;
     the second leaves at once with exit status 4. Exceptions of the work are raised here.
     """
-    worker = _Worker(work)
     line = _ProgressLine(label, watch)
 
     def on_interrupt(_signal: int, _frame: object) -> None:
@@ -54,16 +36,13 @@ def watched(work: Callable[[], Result], watch: Watch, label: str) -> Result:
 
     before = signal.signal(signal.SIGINT, on_interrupt)
     try:
-        worker.start()
-        while worker.is_alive():
-            worker.join(TICK_SECONDS)
+        doing = Meanwhile(work)
+        while doing.is_running(TICK_SECONDS):
             line.show()
     finally:
         line.clear()
         signal.signal(signal.SIGINT, before)
-    if worker.error is not None:
-        raise worker.error
-    return worker.results[0]
+    return doing.result()
 
 
 class _ProgressLine:

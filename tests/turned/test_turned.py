@@ -57,7 +57,7 @@ def check_turned(found):
     lp, turned = found.head.model, turn(found)
     dual = turned.found
     assert found.passed
-    assert dual.passed, failing(dual)
+    assert dual.passed or only_rounding(dual), failing(dual)
     assert isinstance(dual.dual_route, DualNotSolved)
     close = 1e-9 * max(1.0, abs(found.measurement.primal_objective))
     assert abs(dual.measurement.primal_objective - found.measurement.dual_objective) <= close
@@ -68,6 +68,23 @@ def check_turned(found):
     if basis is not None and found.answer.basis is not None:
         basics = sum(int((part == LineStatus.BASIC).sum()) for part in (basis.row, basis.column))
         assert basics == dual.head.model.m == lp.n
+
+
+def only_rounding(found):
+    """Whether the products alone fail, and by no more than a few roundings of doubles.
+
+    A large variable times the rounding of its reduced cost exceeds any tolerance: with
+    numbers of 1e19 no double is a better answer. The same product stands at a row of
+    the model, where it is small beside price times side.
+    """
+    sides = (found.measurement.rows, found.measurement.columns)
+    smallest = 4 * np.finfo(float).eps
+    rows, columns = (side.complementarity for side in sides)
+    of_rows = np.abs(sides[0].price) * np.maximum(sides[0].value_term, np.abs(sides[0].end))
+    of_columns = np.abs(sides[1].value) * sides[1].price_term
+    return failing(found) == {Condition.COMPLEMENTARITY} and bool(
+        (rows <= smallest * of_rows).all() and (columns <= smallest * of_columns).all()
+    )
 
 
 def check_maps(found, turned):
@@ -116,6 +133,7 @@ def test_the_dual_of_a_verified_model_is_verified(lp):
 def test_a_model_with_an_optimum_turns(drawn):
     found = examined(drawn[0])
     check_turned(found)
+    assert turn(found).found.passed
     check_mirrored_marks(found, turn(found))
 
 
@@ -143,6 +161,7 @@ def test_turning_twice_gives_the_marks_back(drawn):
 def test_real_models_turn(path):
     found = examined(read_model(path).model)
     check_turned(found)
+    assert turn(found).found.passed
     assert turn(found).found.answer.basis is not None
 
 
