@@ -61,11 +61,19 @@ KEYS = (
 )
 
 
+FOOTER = tuple(sorted((k for k in KEYS if k.footer), key=lambda k: k.action == "help"))
+"""Keys of the last line; help stands last, where it is never left out."""
+
+PROMPT = (
+    Key("enter", "submit_prompt", "keep what was typed", FIND, "keep it"),
+    Key("escape", "leave", "leave the prompt", FIND, "leave"),
+)
+"""Keys of the last line while something is typed."""
+
+
 def bindings() -> list[BindingType]:
     """The table as bindings of the widget library."""
-    return [
-        Binding(key.key, key.action, key.footer or key.words, show=bool(key.footer)) for key in KEYS
-    ]
+    return [Binding(key.key, key.action, key.words, show=False) for key in KEYS]
 
 
 _SPELLED = {

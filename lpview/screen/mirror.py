@@ -14,7 +14,7 @@ from textual import events
 from textual.app import ComposeResult
 from textual.binding import BindingType
 from textual.screen import Screen
-from textual.widgets import Footer, Input, Static
+from textual.widgets import Input, Static
 
 from lpview.examination import Optimal
 from lpview.families import Kind, summarize
@@ -24,7 +24,8 @@ from lpview.report.numbers import count
 from lpview.screen import ticket
 from lpview.screen.columns import constraint_columns, variable_columns
 from lpview.screen.history import History
-from lpview.screen.keys import bindings
+from lpview.screen.key_line import KeyLine
+from lpview.screen.keys import FOOTER, PROMPT, bindings
 from lpview.screen.ledger_pane import LedgerPane
 from lpview.screen.outcome import PageScreen, help_text
 from lpview.screen.pane import LinesPane
@@ -74,7 +75,7 @@ class MirrorScreen(Screen[int | None]):
         yield self.ledger
         yield Static("", id="message", markup=False)
         yield Input(id="prompt", compact=True)
-        yield Footer(show_command_palette=False, compact=True)
+        yield KeyLine(FOOTER)
 
     def on_mount(self) -> None:
         """Open folded where there are too many lines to read."""
@@ -260,6 +261,7 @@ class MirrorScreen(Screen[int | None]):
         prompt.value = value
         prompt.display = True
         self.query_one("#message", Static).display = False
+        self.query_one(KeyLine).show(PROMPT)
         prompt.focus()
 
     def _takes_key(self, event: events.Key) -> bool:
@@ -273,7 +275,7 @@ class MirrorScreen(Screen[int | None]):
             if event.is_printable and event.character:
                 prompt.insert_text_at_cursor(event.character)
             elif event.key == "enter":
-                self.on_input_submitted(Input.Submitted(prompt, prompt.value))
+                self.action_submit_prompt()
             elif event.key == "escape":
                 self.action_leave()
             return True
@@ -286,6 +288,7 @@ class MirrorScreen(Screen[int | None]):
     def _close_prompt(self) -> None:
         self.query_one("#prompt", Input).display = False
         self.query_one("#message", Static).display = True
+        self.query_one(KeyLine).show(FOOTER)
         self._prompt_for = ""
         self.leading.focus()
 
@@ -312,6 +315,11 @@ class MirrorScreen(Screen[int | None]):
             self.leading.move_to(int(text) - 1)
         else:
             self.say(f"expected the number of a line, got {text or 'nothing'}")
+
+    def action_submit_prompt(self) -> None:
+        """What Enter does in the prompt, for a click on its key."""
+        prompt = self.query_one("#prompt", Input)
+        self.on_input_submitted(Input.Submitted(prompt, prompt.value))
 
     def action_filter(self, name: str) -> None:
         """Show only lines of the leading table that carry a flag; none shows all."""
