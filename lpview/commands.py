@@ -16,15 +16,9 @@ from lpview import cli
 from lpview.blocks import InputError, Reading, read_model, read_model_bytes, write_blocks
 from lpview.blocks.mistakes import Mistake, quoted
 from lpview.decimals import number_text
-from lpview.examination import (
-    Examination,
-    NoOptimum,
-    Optimal,
-    Request,
-    SecondRoute,
-    examine,
-)
+from lpview.examination import examine
 from lpview.model import LinearProgram
+from lpview.outcomes import Examination, NoOptimum, Optimal, Request, SecondRoute
 from lpview.report.document import Document
 from lpview.run import Method, SolveSettings, Watch
 from lpview.scaling import NotRepresentableError

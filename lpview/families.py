@@ -18,10 +18,10 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import NDArray
 
-from lpview.examination import Optimal
 from lpview.kkt import Side
 from lpview.marks import Flag
 from lpview.model import Vector
+from lpview.outcomes import Optimal
 
 Index = NDArray[np.intp]
 

@@ -14,9 +14,9 @@ import numpy as np
 from numpy.typing import NDArray
 
 from lpview.answer import LineStatus
-from lpview.examination import Optimal
 from lpview.marks import Flag
 from lpview.model import Vector
+from lpview.outcomes import Optimal
 
 Index = NDArray[np.integer]
 

@@ -17,8 +17,9 @@ import numpy as np
 from lpview.blocks import Notes, write_blocks
 from lpview.decimals import number_text
 from lpview.dual import DualProgram, build_dual, dual_answer
-from lpview.examination import Head, Optimal, Request, check_answer
+from lpview.examination import check_answer
 from lpview.kkt import Side
+from lpview.outcomes import Head, Optimal, Request
 from lpview.sides import NOWHERE, Index
 
 

@@ -6,7 +6,7 @@ import shlex
 from dataclasses import replace
 from typing import TypeVar
 
-from lpview.examination import Examination
+from lpview.outcomes import Examination
 
 Found = TypeVar("Found", bound=Examination)
 

@@ -5,8 +5,8 @@ from __future__ import annotations
 import numpy as np
 
 from lpview.basis import PriceDifference
-from lpview.examination import BasisRoute, DualSolved, Optimal
 from lpview.marks import FAULTS, Flag
+from lpview.outcomes import BasisRoute, DualSolved, Optimal
 from lpview.polish import OwnNumbers
 from lpview.report.document import Block, Facts, Table
 from lpview.report.names import fitted, line_name

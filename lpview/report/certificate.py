@@ -4,8 +4,8 @@ from __future__ import annotations
 
 import numpy as np
 
-from lpview.examination import NoOptimum
 from lpview.model import LinearProgram, Vector
+from lpview.outcomes import NoOptimum
 from lpview.repair.certificate import Farkas, Ray
 from lpview.repair.search import Infeasible
 from lpview.report.document import Block, Facts, Sentence, Table

@@ -5,15 +5,8 @@ from __future__ import annotations
 import platform
 
 from lpview import __version__
-from lpview.examination import (
-    Examination,
-    Head,
-    NoOptimum,
-    NotEstablished,
-    Optimal,
-    Stopped,
-)
 from lpview.model import LinearProgram
+from lpview.outcomes import Examination, Head, NoOptimum, NotEstablished, Optimal, Stopped
 from lpview.repair.search import Infeasible
 from lpview.report import answer, certificate
 from lpview.report.document import Block, Command, Document, Facts, Sentence, Table

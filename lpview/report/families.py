@@ -2,8 +2,8 @@
 
 from __future__ import annotations
 
-from lpview.examination import Examination, Optimal
 from lpview.families import Kind, Summary, summarize
+from lpview.outcomes import Examination, Optimal
 from lpview.report import asking
 from lpview.report.check import report
 from lpview.report.document import Document, Table

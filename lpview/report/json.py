@@ -10,7 +10,8 @@ from typing import Any
 import numpy as np
 
 from lpview import __version__
-from lpview.examination import (
+from lpview.model import LinearProgram, Vector
+from lpview.outcomes import (
     BasisRoute,
     DualSolved,
     Examination,
@@ -19,7 +20,6 @@ from lpview.examination import (
     NotEstablished,
     Optimal,
 )
-from lpview.model import LinearProgram, Vector
 from lpview.polish import Polished
 from lpview.repair.search import Infeasible, Unbounded
 from lpview.report.names import line_kind_and_name

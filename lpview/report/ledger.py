@@ -7,10 +7,10 @@ from collections.abc import Sequence
 
 import numpy as np
 
-from lpview.examination import Examination, Optimal
 from lpview.ledger import Ledger, ledger
 from lpview.marks import Flag
 from lpview.model import LinearProgram
+from lpview.outcomes import Examination, Optimal
 from lpview.report import asking
 from lpview.report.check import CAUTION, report, verdict
 from lpview.report.document import Block, Command, Document, Facts, Sentence, Table

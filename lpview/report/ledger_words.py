@@ -11,9 +11,9 @@ from __future__ import annotations
 
 import numpy as np
 
-from lpview.examination import Optimal
 from lpview.ledger import Ledger
 from lpview.marks import FAULTS, Flag
+from lpview.outcomes import Optimal
 from lpview.report.numbers import count, number
 
 

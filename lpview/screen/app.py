@@ -24,7 +24,7 @@ from textual.screen import Screen
 from textual.widgets import Footer, Static
 
 if TYPE_CHECKING:
-    from lpview.examination import Examination
+    from lpview.outcomes import Examination
     from lpview.run import Watch
 
 

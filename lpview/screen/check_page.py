@@ -10,7 +10,7 @@ from textual.binding import Binding, BindingType
 from textual.screen import Screen
 from textual.widgets import Footer
 
-from lpview.examination import Optimal
+from lpview.outcomes import Optimal
 from lpview.report import text
 from lpview.report.check import report
 from lpview.screen.pane import CURSOR, HEADING, PLAIN, LinesPane, Runs

@@ -13,9 +13,9 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import NDArray
 
-from lpview.examination import Optimal
 from lpview.kkt import Side
 from lpview.model import Vector
+from lpview.outcomes import Optimal
 from lpview.report.numbers import fitted_number, number
 
 NUMBER = 12

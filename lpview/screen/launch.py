@@ -9,7 +9,7 @@ from typing import TYPE_CHECKING
 from lpview.screen.app import Work, run
 
 if TYPE_CHECKING:
-    from lpview.examination import Examination
+    from lpview.outcomes import Examination
     from lpview.run import Watch
 
 

@@ -6,9 +6,9 @@ from textwrap import wrap
 
 import numpy as np
 
-from lpview.examination import Optimal
 from lpview.ledger import Ledger, ledger
 from lpview.model import Vector
+from lpview.outcomes import Optimal
 from lpview.report.ledger import heading
 from lpview.report.ledger_words import meaning
 from lpview.report.names import fitted, width

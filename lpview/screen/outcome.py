@@ -10,7 +10,7 @@ from textual.containers import VerticalScroll
 from textual.screen import Screen
 from textual.widgets import Footer, Static
 
-from lpview.examination import Examination, NoOptimum, NotEstablished, Optimal, Stopped
+from lpview.outcomes import Examination, NoOptimum, NotEstablished, Optimal, Stopped
 from lpview.repair.search import Infeasible
 from lpview.screen.keys import groups
 

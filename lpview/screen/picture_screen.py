@@ -16,8 +16,8 @@ from textual.strip import Strip
 from textual.widget import Widget
 from textual.widgets import Footer
 
-from lpview.examination import Optimal
 from lpview.marks import Flag
+from lpview.outcomes import Optimal
 from lpview.screen import picture_view
 from lpview.screen.picture import draw
 from lpview.screen.picture_grid import Axis, Grid, Pattern, count

@@ -10,9 +10,9 @@ from rich.segment import Segment
 from textual.strip import Strip
 from textual.widget import Widget
 
-from lpview.examination import Optimal
 from lpview.kkt import Condition
 from lpview.marks import Flag
+from lpview.outcomes import Optimal
 from lpview.report.names import fitted, safe, width
 from lpview.report.numbers import number
 from lpview.screen.pane import FAULT, HEADING, PLAIN, Runs

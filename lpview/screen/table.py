@@ -8,10 +8,10 @@ from dataclasses import dataclass, field
 import numpy as np
 from rich.style import Style
 
-from lpview.examination import Optimal
 from lpview.families import Summary
 from lpview.marks import FAULTS
 from lpview.model import Vector
+from lpview.outcomes import Optimal
 from lpview.report.names import fitted, width
 from lpview.report.numbers import fitted_number
 from lpview.screen.columns import GAP, NUMBER, Column, Layout, TableColumns, layout

@@ -9,7 +9,7 @@ from pathlib import Path
 
 from textual.app import App
 
-from lpview.examination import Optimal
+from lpview.outcomes import Optimal
 from lpview.report import asking, markdown, text
 from lpview.report.check import report
 

@@ -21,7 +21,7 @@ from tests.benchmarks.models import examined
 if TYPE_CHECKING:
     from textual.app import App
 
-    from lpview.examination import Optimal
+    from lpview.outcomes import Optimal
 
 SETTLE = 0.4
 """Seconds of pretended solving, so that the working screen stands when it ends."""

@@ -9,8 +9,9 @@ import numpy as np
 
 from lpview.answer import Answer
 from lpview.blocks import Notes, Reading, write_blocks
-from lpview.examination import Request, SecondRoute, examine
+from lpview.examination import examine
 from lpview.kkt import measure
+from lpview.outcomes import Request, SecondRoute
 from lpview.run import Claim, Solved, SolverRun, Unsolved
 from lpview.solver import solve
 from lpview.verdict import judge

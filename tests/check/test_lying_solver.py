@@ -10,14 +10,8 @@ import pytest
 
 from lpview import cli
 from lpview.answer import Basis
-from lpview.examination import (
-    NoOptimum,
-    NotEstablished,
-    Optimal,
-    SecondRoute,
-    Stopped,
-)
 from lpview.kkt import Condition
+from lpview.outcomes import NoOptimum, NotEstablished, Optimal, SecondRoute, Stopped
 from lpview.polish import OwnNumbers, Polished
 from lpview.repair.search import Infeasible, Unbounded
 from lpview.run import Claim

@@ -8,8 +8,8 @@ import pytest
 from lpview import cli
 from lpview.answer import LineStatus
 from lpview.blocks import read_model
-from lpview.examination import NoOptimum, NotEstablished, Optimal, SecondRoute
 from lpview.kkt import Condition
+from lpview.outcomes import NoOptimum, NotEstablished, Optimal, SecondRoute
 from lpview.repair.search import Infeasible, Unbounded
 from lpview.scaling import NotRepresentableError
 from tests import oracle

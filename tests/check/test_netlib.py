@@ -15,7 +15,7 @@ from pathlib import Path
 import pytest
 
 from lpview.blocks import read_model
-from lpview.examination import Optimal
+from lpview.outcomes import Optimal
 from lpview.report import json
 from tests.check.helpers import examined
 from tests.oracle import check_report

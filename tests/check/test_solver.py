@@ -14,8 +14,8 @@ from hypothesis import strategies as st
 
 from lpview.answer import LineStatus
 from lpview.blocks import read_model
-from lpview.examination import Stopped
 from lpview.kkt import Condition
+from lpview.outcomes import Stopped
 from lpview.run import Claim, Method, Solved, SolveSettings, Unsolved, Watch
 from lpview.solver import solve
 from tests.check.helpers import correct, examined, verdicts

@@ -11,7 +11,7 @@ import numpy as np
 import pytest
 
 from lpview.blocks import read_model
-from lpview.examination import NoOptimum, Optimal, SecondRoute
+from lpview.outcomes import NoOptimum, Optimal, SecondRoute
 from lpview.repair.certificate import check_farkas, check_ray
 from lpview.repair.search import Infeasible, Unbounded
 from tests.check.helpers import examined

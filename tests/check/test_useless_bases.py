@@ -9,7 +9,7 @@ import pytest
 
 from lpview import cli
 from lpview.answer import Basis, LineStatus
-from lpview.examination import NoBasisRoute, Optimal
+from lpview.outcomes import NoBasisRoute, Optimal
 from lpview.polish import OwnNumbers
 from tests.check.helpers import changed, examined
 from tests.check.stubs import FEASIBLE, about_the_answer, status_of

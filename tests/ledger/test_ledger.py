@@ -12,8 +12,9 @@ from hypothesis import given, settings
 
 from lpview.answer import Answer, Basis, LineStatus
 from lpview.blocks import read_model
-from lpview.examination import Optimal, check_answer
+from lpview.examination import check_answer
 from lpview.ledger import column_ledger, ledger, row_ledger
+from lpview.outcomes import Optimal
 from lpview.report import markdown, text
 from lpview.report.ledger import ledger_blocks, ledger_report, line_options
 from tests.check.helpers import examined, line_of

@@ -11,7 +11,8 @@ from typing import Any
 import pytest
 
 from lpview.blocks import read_model_bytes
-from lpview.examination import Request, examine
+from lpview.examination import examine
+from lpview.outcomes import Request
 from lpview.report.names import width
 from lpview.screen.app import LpviewApp, Work
 from lpview.screen.columns import NUMBER

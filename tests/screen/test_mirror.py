@@ -11,8 +11,9 @@ import numpy as np
 import pytest
 
 from lpview.blocks import read_model
-from lpview.examination import Optimal, Request, examine
+from lpview.examination import examine
 from lpview.marks import Flag
+from lpview.outcomes import Optimal, Request
 from lpview.report import text
 from lpview.report.check import report
 from lpview.screen.app import LpviewApp, Work

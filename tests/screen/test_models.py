@@ -8,8 +8,9 @@ import pytest
 
 from lpview import cli
 from lpview.blocks import read_model
-from lpview.examination import Optimal, Request, examine
+from lpview.examination import examine
 from lpview.marks import Flag
+from lpview.outcomes import Optimal, Request
 from lpview.solver import solve
 from tests.screen.models import (
     ALIKE,

@@ -10,7 +10,7 @@ from rich.cells import cell_len
 from textual.app import App
 from textual.geometry import Offset
 
-from lpview.examination import Optimal
+from lpview.outcomes import Optimal
 from lpview.screen.picture import STYLES as CELL_STYLES
 from lpview.screen.picture_screen import (
     FOOTER,

@@ -12,7 +12,8 @@ from pathlib import Path
 import pytest
 
 from lpview.blocks import read_model_bytes
-from lpview.examination import Request, examine
+from lpview.examination import examine
+from lpview.outcomes import Request
 from lpview.screen.app import LpviewApp, Work
 from lpview.screen.key_line import KeyLine
 from lpview.solver import solve

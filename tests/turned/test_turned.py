@@ -12,9 +12,10 @@ from hypothesis import assume, given, settings
 from lpview.answer import Answer, Basis, LineStatus
 from lpview.blocks import read_model
 from lpview.dual import build_dual, dual_answer, original_answer
-from lpview.examination import DualNotSolved, Optimal, check_answer
+from lpview.examination import check_answer
 from lpview.kkt import Condition
 from lpview.marks import Flag
+from lpview.outcomes import DualNotSolved, Optimal
 from lpview.turned import turn
 from tests.check.helpers import examined, failing
 from tests.dual.models import INF, feasible_pairs, model
