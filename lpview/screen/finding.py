@@ -16,6 +16,11 @@ from lpview.screen.linked import LinkedScreen
 class FindingScreen(LinkedScreen):
     """Linked panes whose lines can be searched, filtered, sorted and folded."""
 
+    @property
+    def is_asking(self) -> bool:
+        """Whether the prompt is open."""
+        return bool(self._prompt_for)
+
     def action_search(self) -> None:
         """Ask for words; the table follows while they are typed."""
         self._ask("search", "words of a name", self.leading.view.search)
@@ -32,7 +37,7 @@ class FindingScreen(LinkedScreen):
         prompt.display = True
         self.query_one("#message", Static).display = False
         self.query_one(KeyLine).show(PROMPT)
-        prompt.focus()
+        self.set_focus(prompt)
 
     def takes_key(self, event: events.Key) -> bool:
         """Open a prompt at once, and give it what is typed before it has the focus.
@@ -60,7 +65,7 @@ class FindingScreen(LinkedScreen):
         self.query_one("#message", Static).display = True
         self.query_one(KeyLine).show(FOOTER)
         self._prompt_for = ""
-        self.leading.focus()
+        self.set_focus(self.leading)
 
     def on_input_changed(self, event: Input.Changed) -> None:
         """Search as the words are typed."""

@@ -84,7 +84,7 @@ class LinkedScreen(Screen[int | None]):
         if self.found.head.model.m + self.found.head.model.n > FOLD_ABOVE:
             for table in (self.constraints, self.variables):
                 table.fold(True)
-        self.leading.focus()
+        self.set_focus(self.leading)
         self.follow_selection(self.leading)
 
     # Linking -----------------------------------------------------------------
@@ -154,7 +154,7 @@ class LinkedScreen(Screen[int | None]):
             self.clear_limits(table)
             self.say("filters taken off to show the line")
         table.select_line(local)
-        table.focus()
+        self.set_focus(table)
         self.follow_selection(table)
 
     def takes_key(self, event: events.Key) -> bool:
@@ -178,7 +178,7 @@ class LinkedScreen(Screen[int | None]):
     def _step_pane(self, step: int) -> None:
         panes: list[LinesPane] = [self.constraints, self.variables, self.ledger]
         at = panes.index(self.focused) if isinstance(self.focused, LinesPane) else 0
-        panes[(at + step) % len(panes)].focus()
+        self.set_focus(panes[(at + step) % len(panes)])
 
     def action_follow(self) -> None:
         """From a family to its lines, from a line to its partner, from a term to its line."""

@@ -2,13 +2,22 @@
 
 from __future__ import annotations
 
+from textual import work
+from textual.message import Message
+from textual.worker import get_current_worker
+
 from lpview.screen import ticket
 from lpview.screen.finding import FindingScreen
 from lpview.screen.outcome import PageScreen, help_text
 
+TURNING = "turning the mirror; Escape gives up"
+"""Said while the dual is rebuilt and checked."""
+
 
 class MirrorScreen(FindingScreen):
     """Linked panes, finding in them, pages over them, tickets from them."""
+
+    _turning = False
 
     def action_help(self) -> None:
         """All keys on one page."""
@@ -32,10 +41,54 @@ class MirrorScreen(FindingScreen):
             self.visit(line)
 
     def action_turn(self) -> None:
-        """The dual program as the model under review, and back."""
-        from lpview.screen.turning import turned_screen
+        """The dual program as the model under review, and back.
 
-        self.app.push_screen(turned_screen(self), self._go_to_result)
+        Seconds of work on a model of a million coefficients, so a thread does it.
+        """
+        if self._turning:
+            self.say(TURNING)
+            return
+        self._turning = True
+        self.say(TURNING)
+        self._turn_aside(self.line)
+
+    @work(thread=True, exclusive=True)
+    def _turn_aside(self, line: int) -> None:
+        from lpview import turned
+        from lpview.cli import told
+        from lpview.screen.turning import TurnedScreen
+
+        try:
+            page = TurnedScreen(turned.turn(self.found), line, self.ascii_marks)
+        except Exception as error:  # said in a line; the terminal sees no traceback
+            self.post_message(self.Ready(None, told(error)[0]))
+            return
+        if not get_current_worker().is_cancelled:
+            self.post_message(self.Ready(page, ""))
+
+    class Ready(Message):
+        """The dual is there to be looked at, or what went wrong instead."""
+
+        def __init__(self, page: MirrorScreen | None, problem: str) -> None:
+            super().__init__()
+            self.page, self.problem = page, problem
+
+    def on_mirror_screen_ready(self, message: Ready) -> None:
+        """Show the dual, unless Escape was pressed meanwhile."""
+        if self._turning:
+            self._turning = False
+            self.say(message.problem)
+            if message.page:
+                self.app.push_screen(message.page, self._go_to_result)
+
+    def action_leave(self) -> None:
+        """Give up turning; else what it does in the linked panes."""
+        if self._turning and not self.is_asking:
+            self._turning = False
+            self.workers.cancel_node(self)
+            self.say("the mirror was not turned")
+            return
+        super().action_leave()
 
     def action_ticket(self, form: str) -> None:
         """Save the check and send it to the terminal's clipboard."""

@@ -7,7 +7,7 @@ from typing import ClassVar
 from textual.binding import Binding, BindingType
 
 from lpview.screen.mirror import MirrorScreen
-from lpview.turned import Turned, turn
+from lpview.turned import Turned
 
 
 class TurnedScreen(MirrorScreen):
@@ -31,8 +31,3 @@ class TurnedScreen(MirrorScreen):
     def action_turn(self) -> None:
         """Back to the model, on the partner of the line selected here."""
         self.dismiss(int(self._turned.to_primal[self.line]) if self.line >= 0 else None)
-
-
-def turned_screen(screen: MirrorScreen) -> TurnedScreen:
-    """The dual of what a screen shows."""
-    return TurnedScreen(turn(screen.found), screen.line, screen.ascii_marks)

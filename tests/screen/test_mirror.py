@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import asyncio
+import threading
 from collections.abc import Awaitable, Callable
 from pathlib import Path
 from typing import Any
@@ -22,6 +23,7 @@ from lpview.screen.mirror import MirrorScreen
 from lpview.screen.outcome import MessageScreen, OutcomeScreen, PageScreen
 from lpview.screen.turning import TurnedScreen
 from lpview.solver import solve
+from lpview.turned import turn
 
 MODELS = Path(__file__).parents[2] / "models"
 
@@ -287,6 +289,8 @@ def test_the_mirror_turns_and_comes_back_with_the_same_line():
     async def script(pilot, screen):
         await pilot.press("down")  # heat
         await pilot.press("d")
+        await pilot.app.workers.wait_for_complete()
+        await pilot.pause()
         turned = pilot.app.screen
         assert isinstance(turned, TurnedScreen)
         assert turned.leading is turned.variables
@@ -294,6 +298,78 @@ def test_the_mirror_turns_and_comes_back_with_the_same_line():
         assert turned.found.passed
         await pilot.press("d")
         assert pilot.app.screen is screen and screen.line == 1
+
+    drive(WINTER, script)
+
+
+@pytest.mark.parametrize("line", range(WINTER.head.model.m + WINTER.head.model.n))
+def test_every_line_is_found_again_in_the_dual_and_back(line):
+    async def script(pilot, screen):
+        screen.show_line(line)
+        await pilot.press("d")
+        await pilot.app.workers.wait_for_complete()
+        await pilot.pause()
+        assert pilot.app.screen.line == turn(WINTER).to_dual[line]
+        await pilot.press("d")
+        await pilot.pause()
+        assert pilot.app.screen is screen and screen.line == line
+
+    drive(WINTER, script)
+
+
+@pytest.fixture
+def held_turn(monkeypatch):
+    """Turning that lasts until the event is set, as on a model of a million coefficients."""
+    go_on = threading.Event()
+
+    def slowly(found: Optimal) -> Any:
+        assert go_on.wait(60)
+        return turn(found)
+
+    monkeypatch.setattr("lpview.turned.turn", slowly)
+    return go_on
+
+
+def test_the_screen_can_be_used_while_the_mirror_turns(held_turn):
+    async def script(pilot, screen):
+        await pilot.press("d", "down", "d")  # a second press does not turn twice
+        assert pilot.app.screen is screen and screen.line == 1
+        held_turn.set()
+        await pilot.app.workers.wait_for_complete()
+        await pilot.pause()
+        assert isinstance(pilot.app.screen, TurnedScreen)
+        await pilot.press("d")
+        assert pilot.app.screen is screen and screen.line == 0
+
+    drive(WINTER, script)
+
+
+def test_escape_gives_up_turning_and_it_can_be_asked_for_again(held_turn):
+    async def script(pilot, screen):
+        await pilot.press("d", "escape")
+        assert str(screen.query_one("#message").render()) == "the mirror was not turned"
+        held_turn.set()
+        await pilot.pause()
+        assert pilot.app.screen is screen
+        await pilot.press("d")
+        while not isinstance(pilot.app.screen, TurnedScreen):
+            await pilot.pause()
+
+    drive(WINTER, script)
+
+
+def test_a_turn_that_fails_is_said_in_a_line(monkeypatch):
+    def broken(found: Optimal) -> Any:
+        raise ZeroDivisionError("by zero")
+
+    monkeypatch.setattr("lpview.turned.turn", broken)
+
+    async def script(pilot, screen):
+        await pilot.press("d")
+        await pilot.app.workers.wait_for_complete()
+        await pilot.pause()
+        assert pilot.app.screen is screen
+        assert "ZeroDivisionError: by zero" in str(screen.query_one("#message").render())
 
     drive(WINTER, script)
 

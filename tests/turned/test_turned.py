@@ -7,7 +7,7 @@ from pathlib import Path
 
 import numpy as np
 import pytest
-from hypothesis import assume, given, settings
+from hypothesis import HealthCheck, assume, given, settings
 
 from lpview.answer import Answer, Basis, LineStatus
 from lpview.blocks import read_model
@@ -16,6 +16,7 @@ from lpview.examination import check_answer
 from lpview.kkt import Condition
 from lpview.marks import Flag
 from lpview.outcomes import DualNotSolved, Optimal
+from lpview.scaling import NotRepresentableError
 from lpview.turned import turn
 from tests.check.helpers import examined, failing
 from tests.dual.models import INF, feasible_pairs, model
@@ -27,11 +28,6 @@ NETLIB = sorted(
     if path.stem != "values"
 )
 MODELS = Path(__file__).parents[2] / "models"
-
-
-def numbers(lp):
-    """Every array of numbers of a model."""
-    return (lp.c, lp.A.data, lp.row_lower, lp.row_upper, lp.lower, lp.upper)
 
 
 def objective(lp, x):
@@ -117,16 +113,14 @@ def check_mirrored_marks(found, turned):
 
 
 @given(linear_programs(nasty_names=False))
-@settings(max_examples=150, deadline=None)
+@settings(max_examples=80, deadline=None, suppress_health_check=[HealthCheck.filter_too_much])
 def test_the_dual_of_a_verified_model_is_verified(lp):
-    # Beside numbers near 1e19, a plan that is right to the last digit of its doubles is
-    # off by hundreds in a product, which is judged against terms that may all be 0.
-    assume(
-        max(float(np.max(np.abs(part[np.isfinite(part)]), initial=0)) for part in numbers(lp)) < 1e9
-    )
-    found = examined(lp)
-    if isinstance(found, Optimal) and found.passed:
-        check_turned(found)
+    try:
+        found = examined(lp)
+    except NotRepresentableError:  # numbers too far apart for the solver
+        found = None
+    assume(isinstance(found, Optimal) and found.passed)
+    check_turned(found)
 
 
 @given(feasible_pairs())
@@ -170,6 +164,7 @@ def test_real_models_turn(path):
 def test_shipped_models_turn_into_their_dual(name):
     found = examined(read_model(MODELS / f"{name}.csv").model)
     check_turned(found)
+    assert turn(found).found.passed
     check_mirrored_marks(found, turn(found))
 
 
