@@ -16,6 +16,9 @@ from lpview.screen.linked import LinkedScreen
 class FindingScreen(LinkedScreen):
     """Linked panes whose lines can be searched, filtered, sorted and folded."""
 
+    _typed_ahead = 0
+    """Where in the prompt the letters end that were typed before it had the focus."""
+
     @property
     def is_asking(self) -> bool:
         """Whether the prompt is open."""
@@ -34,6 +37,7 @@ class FindingScreen(LinkedScreen):
         prompt = self.query_one("#prompt", Input)
         prompt.placeholder = f"{purpose}: {hint}; Enter keeps it, Escape leaves"
         prompt.value = value
+        prompt.cursor_position = self._typed_ahead = len(value)
         prompt.display = True
         self.query_one("#message", Static).display = False
         self.query_one(KeyLine).show(PROMPT)
@@ -48,7 +52,11 @@ class FindingScreen(LinkedScreen):
         if self._prompt_for:
             prompt = self.query_one("#prompt", Input)
             if event.is_printable and event.character:
-                prompt.insert_text_at_cursor(event.character)
+                # Before whatever the prompt has got by itself in the meantime.
+                cursor = prompt.cursor_position + 1
+                prompt.insert(event.character, self._typed_ahead)
+                prompt.cursor_position = cursor
+                self._typed_ahead += 1
             elif event.key == "enter":
                 self.action_submit_prompt()
             elif event.key == "escape":

@@ -71,7 +71,8 @@ class LinkedScreen(Screen[int | None]):
         yield self.variables
         yield self.ledger
         yield Static("", id="message", markup=False)
-        yield Input(id="prompt", compact=True)
+        # Selecting on focus would have the next letter replace those typed ahead.
+        yield Input(id="prompt", compact=True, select_on_focus=False)
         yield KeyLine(FOOTER)
 
     def on_mount(self) -> None:

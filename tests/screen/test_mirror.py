@@ -10,6 +10,7 @@ from typing import Any
 
 import numpy as np
 import pytest
+from textual import events
 
 from lpview.blocks import read_model
 from lpview.examination import examine
@@ -148,6 +149,26 @@ def test_search_narrows_as_it_is_typed_keeps_the_line_and_is_cleared():
         await pilot.press("escape")
         assert len(screen.constraints.view.order) == SEASON.head.model.m
         assert screen.line == chosen
+
+    drive(SEASON, script)
+
+
+@pytest.mark.parametrize("late", range(6))
+def test_letters_typed_ahead_are_kept_in_order(late):
+    """Whichever letters reach the pane and which the prompt, in whatever turn they are handled."""
+
+    async def script(pilot, screen):
+        pane = screen.constraints
+        assert screen.takes_key(events.Key("slash", "/"))
+        prompt = screen.query_one("#prompt")
+        for letter in "bench"[late:]:  # the prompt may be the quicker one
+            prompt.insert_text_at_cursor(letter)
+        for letter in "bench"[:late]:
+            assert pane.takes_key(events.Key(letter, letter))
+        await pilot.pause()
+        assert prompt.value == "bench"
+        await pilot.press("[", "enter")
+        assert pane.view.search == "bench["
 
     drive(SEASON, script)
 
