@@ -1,4 +1,4 @@
-"""HiGHS behind one function; the only module that imports it.
+"""One solve from nothing: a model in, an answer or a claim out.
 
 The solver is handed the model's own numbers, rescaled by powers of two where it
 would drop or misread them (:mod:`lpview.scaling`), and its answer is carried back
@@ -7,8 +7,6 @@ to the model as given. What it says is recorded as a claim, never believed here.
 
 from __future__ import annotations
 
-import os
-import sys
 import time
 from typing import Any
 
@@ -18,18 +16,10 @@ import numpy as np
 from lpview import trivial
 from lpview.answer import Answer, Basis, LineStatus, Statuses
 from lpview.decimals import number_text
-from lpview.model import LinearProgram, Sense, Vector
+from lpview.model import LinearProgram, Vector
 from lpview.run import Claim, Method, Solved, SolverRun, SolveSettings, Unsolved, Watch
-from lpview.scaling import Limits, NotRepresentableError, Scaling, scaling_for
-
-SMALL_COEFFICIENT = 1e-12
-"""The smallest threshold that HiGHS accepts for dropping coefficients."""
-
-LIMITS = Limits(smallest=SMALL_COEFFICIENT, wary=1e-9, ample=1e10, largest=1e15, infinite=1e20)
-"""What HiGHS keeps as it is (its documented defaults, and the threshold above).
-
-Rows beyond 1e10 are rescaled too: with coefficients near 1e13 it was seen to call a bounded
-model unbounded."""
+from lpview.scaling import Scaling, scaling_for
+from lpview.solver.highs import LIMITS, SMALL_COEFFICIENT, pass_model, quiet_highs
 
 _STATUS = highspy.HighsModelStatus
 _CLAIMS = {
@@ -46,8 +36,6 @@ _METHODS = {
     Method.SIMPLEX: "simplex",
     Method.INTERIOR_POINT: "ipm",
 }
-_ROW_WISE = 2
-_SENSE = {Sense.MINIMIZE: 1, Sense.MAXIMIZE: -1}
 
 
 def solve(
@@ -64,10 +52,10 @@ def solve(
     scaling = scaling_for(lp, LIMITS)
     scaled = scaling.apply(lp)
     options = _options(settings)
-    highs = _quiet_highs()
+    highs = quiet_highs()
     for name, value in options.items():
         highs.setOptionValue(name, value)
-    _pass_model(highs, scaled)
+    pass_model(highs, scaled)
     _follow(highs, watch)
     started = time.perf_counter()
     highs.run()
@@ -76,28 +64,6 @@ def solve(
     if run.claim is not Claim.OPTIMAL:
         return Unsolved(run)
     return Solved(_answer(highs, scaled, scaling), run)
-
-
-def _quiet_highs() -> Any:
-    """A solver object; its constructor prints to C's standard output, so hide that."""
-    sys.stdout.flush()
-    try:
-        saved = os.dup(1)
-    except OSError:  # standard output is closed: nothing to protect
-        return _silent(highspy.Highs())  # type: ignore[no-untyped-call]
-    null = os.open(os.devnull, os.O_WRONLY)
-    os.dup2(null, 1)
-    try:
-        return _silent(highspy.Highs())  # type: ignore[no-untyped-call]
-    finally:
-        os.dup2(saved, 1)
-        os.close(saved)
-        os.close(null)
-
-
-def _silent(highs: Any) -> Any:
-    highs.setOptionValue("output_flag", False)
-    return highs
 
 
 def _options(settings: SolveSettings) -> dict[str, Any]:
@@ -114,18 +80,6 @@ def _options(settings: SolveSettings) -> dict[str, Any]:
     if settings.iteration_limit is not None:
         options["simplex_iteration_limit"] = settings.iteration_limit
     return options
-
-
-def _pass_model(highs: Any, lp: LinearProgram) -> None:
-    A = lp.A
-    status = highs.passModel(
-        lp.n, lp.m, A.nnz, _ROW_WISE, _SENSE[lp.sense], lp.offset, lp.c, lp.lower, lp.upper,
-        lp.row_lower, lp.row_upper, A.indptr, A.indices, A.data, np.zeros(lp.n, np.int32),
-    )  # fmt: skip
-    if status == highspy.HighsStatus.kError or highs.getNumNz() != A.nnz:
-        raise NotRepresentableError(
-            "the solver does not take this model's numbers as they are; state it in other units"
-        )
 
 
 def _follow(highs: Any, watch: Watch) -> None:
