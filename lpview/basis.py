@@ -96,12 +96,14 @@ class BasisMatrix:
     """Triangular factors of ``scaled``, as scipy keeps them; None for ``k = 0``."""
 
     def prices(self, costs: Vector) -> Vector:
-        """The solution ``y_R`` of ``A[R, C]' y_R = costs``, shapes ``(k,)``."""
-        return self.row_scale * _solved(self.factors, self.column_scale * costs)
+        """The solution ``y_R`` of ``A[R, C]' y_R = costs``, shapes ``(k,)`` or ``(k, b)``."""
+        scaled = _times(self.column_scale, costs)
+        return _times(self.row_scale, _solved(self.factors, scaled))
 
     def plan(self, sides: Vector) -> Vector:
-        """The solution ``x_C`` of ``A[R, C] x_C = sides``, shapes ``(k,)``."""
-        return self.column_scale * _solved(self.factors, self.row_scale * sides, "T")
+        """The solution ``x_C`` of ``A[R, C] x_C = sides``, shapes ``(k,)`` or ``(k, b)``."""
+        scaled = _times(self.row_scale, sides)
+        return _times(self.column_scale, _solved(self.factors, scaled, "T"))
 
 
 def basis_prices(lp: LinearProgram, basis: Basis) -> BasisPrices | SingularBasis:
@@ -204,6 +206,12 @@ def _factors(scaled: csc_array) -> Any:
 def _solved(factors: Any, right: Vector, trans: Literal["N", "T"] = "N") -> Vector:
     solution: Vector = right if factors is None else factors.solve(right, trans=trans)
     return solution
+
+
+def _times(scale: Vector, values: Vector) -> Vector:
+    """Each entry, or each row of a matrix, times its scale."""
+    product: Vector = scale * values if values.ndim == 1 else scale[:, None] * values
+    return product
 
 
 def _condition(scaled: csc_array, factors: Any) -> float:

@@ -1,0 +1,188 @@
+"""How far one number can move before the basis gives way, and what stops it there.
+
+A side moves a nonbasic value, and the basic values follow; a cost moves a basic price, and
+the nonbasic prices follow. The two are mirror images, so `Mirror` says which is meant and
+everything else is written once. A move stops at the first follower that meets a limit. It
+cannot be continued at the same rate if in that follower's equation nothing that is free to
+move without cost pushes it back (one line that proves the distance), and it cannot be
+continued at all if nothing whatever does.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Iterator
+from dataclasses import dataclass
+
+import numpy as np
+
+from lpview.model import Vector
+from lpview.prices.lines import Index, Lines, Mask
+from lpview.prices.tableau import Tableau
+
+TIE = 1e-9
+"""Followers that meet a limit within this fraction of the distance meet it together."""
+
+Directions = Callable[[Index], Iterator[tuple[Index, Vector]]]
+
+
+@dataclass(frozen=True, eq=False)
+class Mirror:
+    """One of the two spaces; all masks and vectors have shape ``(m + n,)``."""
+
+    followers: Index
+    """Lines that follow a move."""
+    directions: Directions
+    """How all lines follow one unit of a moved line."""
+    sign: float
+    """1, or -1 where the directions are to be turned round (a cost moves against its price)."""
+    room_up: Vector
+    """How far each follower can rise."""
+    room_down: Vector
+    """How far each follower can fall."""
+    answers: Directions
+    """How all lines enter the equation of a follower, times -1."""
+    helpers: Index
+    """Lines that can push a follower back."""
+    rise_free: Mask
+    """Which helpers can rise without leaving the optimal face."""
+    fall_free: Mask
+    """Which can fall so."""
+    rise: Mask
+    """Which helpers can rise at all."""
+    fall: Mask
+    """Which can fall at all."""
+    passes_up: Mask
+    """Which followers may rise past their limit, at another rate."""
+    passes_down: Mask
+    """Which may fall past it."""
+
+
+def value_mirror(lines: Lines, tableau: Tableau) -> Mirror:
+    """Sides and bounds: nonbasic values move, basic values follow."""
+    rise = ~lines.at_high & ~lines.basic
+    fall = ~lines.at_low & ~lines.basic
+    free = lines.price == 0
+    return Mirror(
+        followers=np.flatnonzero(lines.basic),
+        directions=tableau.value_directions,
+        sign=1.0,
+        room_up=np.maximum(lines.high - lines.value, 0.0),
+        room_down=np.maximum(lines.value - lines.low, 0.0),
+        answers=tableau.price_directions,
+        helpers=np.flatnonzero(~lines.basic & ~lines.equal),
+        rise_free=rise & free,
+        fall_free=fall & free,
+        rise=rise,
+        fall=fall,
+        passes_up=np.zeros_like(rise),
+        passes_down=np.zeros_like(rise),
+    )
+
+
+def price_mirror(lines: Lines, tableau: Tableau) -> Mirror:
+    """Costs: basic prices move, nonbasic prices follow."""
+    low, high = lines.price_limits()
+    return Mirror(
+        followers=np.flatnonzero(~lines.basic),
+        directions=tableau.price_directions,
+        sign=-1.0,
+        room_up=np.maximum(high - lines.price, 0.0),
+        room_down=np.maximum(lines.price - low, 0.0),
+        answers=tableau.value_directions,
+        helpers=np.flatnonzero(lines.basic),
+        rise_free=lines.at_low,
+        fall_free=lines.at_high,
+        rise=np.isfinite(lines.low),
+        fall=np.isfinite(lines.high),
+        # A price that changes its sign names the other end of its line.
+        passes_up=np.isfinite(lines.low),
+        passes_down=np.isfinite(lines.high),
+    )
+
+
+@dataclass(frozen=True, eq=False)
+class Ratios:
+    """For moves down and up (first axis 0 and 1) of each of ``k`` lines."""
+
+    distance: Vector
+    """To the first follower's limit, shape ``(2, k)``; ``inf`` without one."""
+    stopper: Index
+    """That follower, -1 without one."""
+    upward: Mask
+    """Whether it rises there."""
+    alone: Mask
+    """Whether all other followers have room there."""
+    is_end: Mask
+    """Whether the rate is proved to change there, or the move to end."""
+    is_last: Mask
+    """Whether the move is proved to end there."""
+
+
+def ratios(mirror: Mirror, moved: Index) -> Ratios:
+    """Move each line on its own, both ways."""
+    k = moved.size
+    distance, stopper = np.full((2, k), np.inf), np.full((2, k), -1)
+    upward, alone = np.zeros((2, k), bool), np.zeros((2, k), bool)
+    up, down = mirror.room_up[mirror.followers], mirror.room_down[mirror.followers]
+    tight = (up == 0) | (down == 0)
+    at = slice(0, 0)
+    for block, directions in mirror.directions(moved):
+        at = slice(at.stop, at.stop + block.size)
+        E = mirror.sign * directions[mirror.followers]
+        for way, turned in ((0, -E), (1, E)):
+            steps = _steps(turned, up, down)
+            if not steps.size:
+                continue
+            first = np.argmin(steps, axis=0)
+            columns = np.arange(block.size)
+            least = steps[first, columns]
+            distance[way, at] = least
+            stopped = np.isfinite(least)
+            stopper[way, at] = np.where(stopped, mirror.followers[first], -1)
+            upward[way, at] = turned[first, columns] > 0
+            resting = (turned[tight] == 0).any(axis=0)
+            close = steps <= least * (1 + TIE) + 1e-12
+            alone[way, at] = stopped & ~resting & (np.count_nonzero(close, axis=0) == 1)
+    is_end, is_last = _proofs(mirror, stopper, upward)
+    return Ratios(distance, stopper, upward, alone, is_end, is_last)
+
+
+def _steps(E: Vector, up: Vector, down: Vector) -> Vector:
+    with np.errstate(divide="ignore", invalid="ignore"):
+        size = np.abs(E)
+        steps: Vector = np.where(E > 0, up[:, None] / size, down[:, None] / size)
+    # A follower at its limit that does not move has room enough: any move from it is 0 / 0.
+    steps[E == 0] = np.inf
+    return steps
+
+
+def _proofs(mirror: Mirror, stopper: Index, upward: Mask) -> tuple[Mask, Mask]:
+    """Whether nothing free, and nothing at all, pushes each stopper back."""
+    distinct = np.unique(stopper[stopper >= 0])
+    helpers = mirror.helpers
+    free, any_ = np.ones((2, distinct.size), bool), np.ones((2, distinct.size), bool)
+    at = slice(0, 0)
+    for block, directions in mirror.answers(distinct):
+        at = slice(at.stop, at.stop + block.size)
+        entries = -directions[helpers]
+        positive, negative = entries > 0, entries < 0
+        for rising in (0, 1):
+            # A rising stopper is pushed back by what makes it fall.
+            helps = (negative, positive) if rising else (positive, negative)
+            free[rising, at] = ~_pushes(helps, mirror.rise_free[helpers], mirror.fall_free[helpers])
+            any_[rising, at] = ~_pushes(helps, mirror.rise[helpers], mirror.fall[helpers])
+    stopped = stopper >= 0
+    is_end, is_last = np.zeros(stopper.shape, bool), np.zeros(stopper.shape, bool)
+    where: Index = np.searchsorted(distinct, stopper[stopped])
+    rises = upward[stopped].astype(int)
+    is_end[stopped], is_last[stopped] = free[rises, where], any_[rises, where]
+    is_last &= ~np.where(upward, mirror.passes_up[stopper], mirror.passes_down[stopper])
+    return is_end, is_last
+
+
+def _pushes(helps: tuple[Mask, Mask], rise: Mask, fall: Mask) -> Mask:
+    by_rising, by_falling = helps
+    pushes: Mask = (by_rising & rise[:, None]).any(axis=0) | (by_falling & fall[:, None]).any(
+        axis=0
+    )
+    return pushes
