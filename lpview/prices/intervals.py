@@ -102,6 +102,21 @@ class Face:
             self._part_of[line].ask(line)
         return float(self.ends.end[0, line]), float(self.ends.end[1, line])
 
+    def _walk(self, piece: Shape) -> None:
+        """The ends of a piece with one degree of freedom, which need no solver."""
+        lines, ends = piece.lines, self.ends
+        along = np.concatenate([[1.0], piece.G.toarray()[:, 0]])
+        with np.errstate(divide="ignore"):
+            low = np.minimum(self.low[lines] - ends.base[lines], 0.0) / along
+            high = np.maximum(self.high[lines] - ends.base[lines], 0.0) / along
+        first, last = np.minimum(low, high).max(), np.maximum(low, high).min()
+        for which in (LEAST, GREATEST):
+            far = np.where((along > 0) == (which == GREATEST), last, first)
+            ends.end[which, lines] = ends.base[lines] + along * far
+            ends.known[which, lines] = True
+            for line, step in zip(lines.tolist(), far.tolist(), strict=True):
+                ends.witness[which, line] = _walked(lines, along, step)
+
     def ask_all(self, between: Callable[[], None]) -> None:
         """Ask for every line; ``between`` is called after each question."""
         for part in self.parts:
@@ -109,6 +124,12 @@ class Face:
             for line in part.lines[self._moves[part.lines]].tolist():
                 self.interval(line)
                 between()
+
+
+def _walked(lines: np.ndarray, along: Vector, step: float) -> Witness:
+    if np.isfinite(step):
+        return Witness(lines, along * step)
+    return Witness(lines, along * 0.0, Witness(lines, along * np.sign(step)))
 
 
 class _Part:

@@ -115,6 +115,10 @@ class Polyhedron:
         high = np.maximum(self._high - self._base, 0.0)
         return Box(low[self._k :], high[self._k :], low[: self._k], high[: self._k])
 
+    def position(self, line: int) -> int:
+        """Where a line stands among ``lines``."""
+        return int(self._position[line])
+
     def limit(self, lines: Index, low: Vector, high: Vector) -> None:
         """Give some lines other limits, which must include the base."""
         at = self._position[lines]

@@ -20,13 +20,17 @@ import math
 import numpy as np
 
 from lpview.model import Vector
+from lpview.prices.asked import Asked, KnownRatios, OneRatio
 from lpview.prices.intervals import GREATEST, LEAST, ZERO, Face
-from lpview.prices.lines import Index, Lines
-from lpview.prices.polyhedron import Polyhedron, Shape, price_shape, value_shape
-from lpview.prices.ratios import Mirror, Ratios, price_mirror, ratios, value_mirror
+from lpview.prices.lines import Index, Lines, Mask
+from lpview.prices.polyhedron import price_shape, value_shape
+from lpview.prices.ratios import TIE, price_mirror, value_mirror
 from lpview.prices.results import Move, Then
 from lpview.prices.tableau import Tableau
-from lpview.warm import Lost, WarmMaker
+from lpview.warm import WarmMaker
+
+ROUGH = 1e-7
+"""What counts as zero at a point found by the solver where `ZERO` leads nowhere."""
 
 
 class Ranges:
@@ -38,16 +42,12 @@ class Ranges:
         self._lines, self._prices, self._plans = lines, prices, plans
         everything = np.ones(lines.value.size, dtype=bool)
         every_value, every_price = value_shape(lines, everything), price_shape(lines, everything)
-        self._sides = _Ratios(value_mirror(lines, tableau))
-        self._costs = _Ratios(price_mirror(lines, tableau))
+        self._sides = KnownRatios(value_mirror(lines, tableau))
+        self._costs = KnownRatios(price_mirror(lines, tableau))
         low, high = lines.low, lines.high
-        self._complementary = _Asked(every_value, lines.value, lines.value_size, warm)
-        self._feasible = _Asked(every_value, lines.value, lines.value_size, warm)
-        self._feasible.always(low, high)
-        self._complementary_prices = _Asked(every_price, lines.price, lines.price_size, warm)
-        self._feasible_prices = _Asked(every_price, lines.price, lines.price_size, warm)
         allowed = np.where(np.isfinite(high), -np.inf, 0.0), np.where(np.isfinite(low), np.inf, 0.0)
-        self._feasible_prices.always(*allowed)
+        self._plan_space = Asked(every_value, lines.value, (low, high), lines.value_size, warm)
+        self._price_space = Asked(every_price, lines.price, allowed, lines.price_size, warm)
 
     def prepare(self) -> None:
         """Read all distances off the basis at once, which is quicker than one by one."""
@@ -56,6 +56,40 @@ class Ranges:
         self._sides.read(np.flatnonzero(~lines.basic & priced))
         columns = np.arange(lines.value.size) >= lines.m
         self._costs.read(np.flatnonzero(lines.basic & columns & ~lines.at_end))
+        self._plan_space.spread(*self._side_levels())
+        self._price_space.spread(*self._cost_levels())
+
+    def _side_levels(self) -> tuple[Index, Mask, Vector]:
+        """Where it will be asked whether plans lie beyond: lines, ways up, levels."""
+        lines = self._lines
+        asked: list[tuple[int, bool, float]] = []
+        for line in np.flatnonzero(~lines.equal).tolist():
+            for is_high, end in ((False, lines.low[line]), (True, lines.high[line])):
+                if math.isinf(end):
+                    continue
+                up = not is_high
+                at_end = (lines.at_high if is_high else lines.at_low)[line]
+                level = self._plans.interval(line)[GREATEST if up else LEAST]
+                if at_end and self._prices.interval(line)[GREATEST if up else LEAST] != 0:
+                    if lines.basic[line] or lines.price[line] == 0:
+                        continue
+                    step = self._sides.of(line, up).distance
+                    level = end + step if up else end - step
+                asked.append((line, up, float(level)))
+        return _levels(asked)
+
+    def _cost_levels(self) -> tuple[Index, Mask, Vector]:
+        """The same for prices, at the bounds where a falling price lets a variable go."""
+        lines = self._lines
+        asked: list[tuple[int, bool, float]] = []
+        for line in np.flatnonzero(lines.at_end & ~lines.equal).tolist():
+            if line >= lines.m and not (
+                np.isfinite(lines.low[line]) and np.isfinite(lines.high[line])
+            ):
+                up = bool(lines.at_low[line])
+                level = self._prices.interval(line)[GREATEST if up else LEAST]
+                asked.append((line, up, float(level)))
+        return _levels(asked)
 
     def side(self, line: int, is_high: bool, up: bool) -> Move:
         """Move one side or bound (both together where they meet)."""
@@ -88,7 +122,7 @@ class Ranges:
         if not lines.basic[line] and _same(rate, lines.price[line], lines.price_size[line]):
             found = self._sides.of(line, up)
             own = abs(limit - end)
-            if own <= found.distance:
+            if own <= found.distance * (1 + TIE):
                 return Move(rate, own, Then.NEVER if math.isinf(own) else Then.INFEASIBLE)
             if found.distance > 0 and found.is_end:
                 then = self._after_found_side(line, up, end, tightens, found)
@@ -96,11 +130,11 @@ class Ranges:
         return self._solved_side(line, up, rate, (end, limit), tightens)
 
     def _after_found_side(
-        self, line: int, up: bool, end: float, tightens: bool, found: _One
+        self, line: int, up: bool, end: float, tightens: bool, found: OneRatio
     ) -> Then:
         if tightens and found.is_last:
             return Then.INFEASIBLE
-        if not tightens or found.alone:
+        if not tightens or found.goes_on:
             return Then.RATE_CHANGES
         return self._after_side(line, up, end + found.distance if up else end - found.distance)
 
@@ -110,9 +144,17 @@ class Ranges:
         """The same by asking: the end of the line over plans complementary to its prices."""
         lines, (end, limit) = self._lines, span
         point = self._prices.ends.at(GREATEST if up else LEAST, line)
-        point = np.where(np.abs(point) <= ZERO * lines.price_size, 0.0, point)
         released = (end, limit) if up else (limit, end)
-        reach = self._complementary.reach(line, up, lines.value_limits(point), released)
+        reach = None
+        for zero in (ZERO, ROUGH):
+            # A rate that holds holds for some distance: none at all means that rounding
+            # was taken for a price, which keeps a line where it need not stay.
+            prices = np.where(np.abs(point) <= zero * lines.price_size, 0.0, point)
+            reach = self._plan_space.reach(line, up, lines.value_limits(prices), released)
+            if reach is not None and not _same(reach, end, lines.value_size[line]):
+                break
+        if reach is not None and _same(reach, end, lines.value_size[line]):
+            return Move(rate, 0.0, Then.NOT_FOUND)
         if reach is None:
             return Move(rate, 0.0, Then.NOT_FOUND)
         if math.isinf(reach):
@@ -126,12 +168,10 @@ class Ranges:
     def _after_side(self, line: int, up: bool, level: float) -> Then:
         """Whether any plan lies beyond ``level``."""
         lines = self._lines
-        released = None
-        if lines.equal[line]:
-            low = min(level, float(lines.value[line]))
-            high = max(level, float(lines.value[line]))
-            released = (low, math.inf) if up else (-math.inf, high)
-        beyond = self._feasible.is_beyond(line, up, level, released)
+        known = self._by_basis(self._sides, line, up, level, bool(lines.basic[line]), lines.value)
+        if known is not None:
+            return Then.RATE_CHANGES if known else Then.INFEASIBLE
+        beyond = self._plan_space.is_beyond(line, up, level, bool(lines.equal[line]))
         if beyond is None:
             return Then.NOT_FOUND
         return Then.RATE_CHANGES if beyond else Then.INFEASIBLE
@@ -168,21 +208,34 @@ class Ranges:
             if found.distance > 0 and found.is_end:
                 return Move(rate, found.distance, self._after_found_cost(line, up, found))
         point = self._plans.ends.at(LEAST if up else GREATEST, line)
-        limits = _price_limits(lines, point)
         released = (-math.inf, 0.0) if up else (0.0, math.inf)
-        reach = self._complementary_prices.reach(line, not up, limits, released)
+        reach = None
+        for zero in (ZERO, ROUGH):
+            limits = _price_limits(lines, point, zero)
+            reach = self._price_space.reach(line, not up, limits, released)
+            if reach is not None and not _same(reach, 0.0, lines.price_size[line]):
+                break
+        if reach is not None and _same(reach, 0.0, lines.price_size[line]):
+            return Move(rate, 0.0, Then.NOT_FOUND)
         if reach is None:
             return Move(rate, 0.0, Then.NOT_FOUND)
         if math.isinf(reach):
             return Move(rate, math.inf, Then.NEVER)
         return Move(rate, abs(reach), self._after_cost(line, up, reach))
 
-    def _after_found_cost(self, line: int, up: bool, found: _One) -> Then:
+    def _after_found_cost(self, line: int, up: bool, found: OneRatio) -> Then:
         if self._cannot_be_unbounded(line, up):
             return Then.RATE_CHANGES
-        if found.is_last or found.alone:
+        if found.is_last or found.goes_on:
             return Then.UNBOUNDED if found.is_last else Then.RATE_CHANGES
         return self._after_cost(line, up, -found.distance if up else found.distance)
+
+    def _by_basis(
+        self, ratios: KnownRatios, line: int, up: bool, level: float, follows: bool, entry: Vector
+    ) -> bool | None:
+        """Whether a line goes beyond where it is, if the basis says so."""
+        here = follows and level == entry[line]
+        return ratios.beyond(line, up) if here else None
 
     def _cannot_be_unbounded(self, line: int, up: bool) -> bool:
         """A variable that cannot go where the cost pushes it cannot go for ever."""
@@ -191,48 +244,26 @@ class Ranges:
     def _after_cost(self, line: int, up: bool, level: float) -> Then:
         if self._cannot_be_unbounded(line, up):
             return Then.RATE_CHANGES
-        released = (-math.inf, max(0.0, level)) if up else (min(0.0, level), math.inf)
-        low, high = self._feasible_prices.limits_of(line)
-        released = (min(released[0], low), max(released[1], high))
-        beyond = self._feasible_prices.is_beyond(line, not up, level, released)
+        nonbasic = not self._lines.basic[line]
+        known = self._by_basis(self._costs, line, not up, level, nonbasic, self._lines.price)
+        if known is not None:
+            return Then.RATE_CHANGES if known else Then.UNBOUNDED
+        beyond = self._price_space.is_beyond(line, not up, level, True)
         if beyond is None:
             return Then.NOT_FOUND
         return Then.RATE_CHANGES if beyond else Then.UNBOUNDED
 
 
-class _One:
-    """What the basis says about one move."""
-
-    def __init__(self, found: Ratios, way: int, k: int) -> None:
-        self.distance = float(found.distance[way, k])
-        self.is_end = bool(found.is_end[way, k])
-        self.is_last = bool(found.is_last[way, k])
-        self.alone = bool(found.alone[way, k])
+def _levels(asked: list[tuple[int, bool, float]]) -> tuple[Index, Mask, Vector]:
+    finite = [one for one in asked if math.isfinite(one[2])]
+    lines, ups, levels = zip(*finite, strict=True) if finite else ((), (), ())
+    return np.array(lines, dtype=np.intp), np.array(ups, dtype=bool), np.array(levels)
 
 
-class _Ratios:
-    """Ratios of all lines read so far."""
-
-    def __init__(self, mirror: Mirror) -> None:
-        self._mirror = mirror
-        self._known: dict[int, tuple[Ratios, int]] = {}
-
-    def read(self, lines: Index) -> None:
-        new = np.array([k for k in lines.tolist() if k not in self._known], dtype=np.intp)
-        if new.size:
-            found = ratios(self._mirror, new)
-            self._known.update({k: (found, at) for at, k in enumerate(new.tolist())})
-
-    def of(self, line: int, up: bool) -> _One:
-        self.read(np.array([line]))
-        found, at = self._known[line]
-        return _One(found, int(up), at)
-
-
-def _price_limits(lines: Lines, value: Vector) -> tuple[Vector, Vector]:
+def _price_limits(lines: Lines, value: Vector, zero: float) -> tuple[Vector, Vector]:
     """Limits of prices complementary to another plan than the one at hand."""
-    at_low = (np.abs(value - lines.low) <= ZERO * lines.value_size) | lines.equal
-    at_high = (np.abs(value - lines.high) <= ZERO * lines.value_size) | lines.equal
+    at_low = (np.abs(value - lines.low) <= zero * lines.value_size) | lines.equal
+    at_high = (np.abs(value - lines.high) <= zero * lines.value_size) | lines.equal
     return np.where(at_high, -np.inf, 0.0), np.where(at_low, np.inf, 0.0)
 
 
@@ -242,80 +273,3 @@ def _cleared(number: float, size: float) -> float:
 
 def _same(first: float, second: float, size: float) -> bool:
     return first == second or abs(first - second) <= ZERO * size
-
-
-class _Asked:
-    """A polyhedron opened when first asked, with what its points have shown."""
-
-    def __init__(self, shape: Shape, base: Vector, size: Vector, warm: WarmMaker) -> None:
-        self._shape, self._base, self._size, self._warm = shape, base, size, warm
-        self._polyhedron: Polyhedron | None = None
-        self._low, self._high = base.copy(), base.copy()
-        self._least, self._greatest = base.copy(), base.copy()
-
-    def always(self, low: Vector, high: Vector) -> None:
-        """The limits, where every question has the same ones."""
-        self._low, self._high = low, high
-
-    def limits_of(self, line: int) -> tuple[float, float]:
-        return float(self._low[line]), float(self._high[line])
-
-    def reach(
-        self, line: int, up: bool, limits: tuple[Vector, Vector], released: tuple[float, float]
-    ) -> float | None:
-        """How far a line goes within ``limits``, its own ones released."""
-        low, high = limits
-        if self._polyhedron is None:
-            self._low, self._high = low, high
-        else:
-            other = np.flatnonzero((low != self._low) | (high != self._high))
-            if other.size:
-                self._polyhedron.limit(other, low[other], high[other])
-            self._low, self._high = low, high
-        return self._ask(line, up, released)[0]
-
-    def is_beyond(
-        self, line: int, up: bool, level: float, released: tuple[float, float] | None
-    ) -> bool | None:
-        """Whether a line can go beyond a level; None where that was not found out."""
-        size = ZERO * max(1.0, abs(level), float(self._size[line]))
-        if released is None and self._seen_beyond(line, up, level, size):
-            return True
-        reach, step = self._ask(line, up, released)
-        if reach is None:
-            return None
-        if released is None and step is not None:
-            self._least = np.minimum(self._least, self._base + step)
-            self._greatest = np.maximum(self._greatest, self._base + step)
-        return reach > level + size if up else reach < level - size
-
-    def _seen_beyond(self, line: int, up: bool, level: float, size: float) -> bool:
-        seen = self._greatest[line] - level if up else level - self._least[line]
-        return bool(seen > size)
-
-    def _ask(
-        self, line: int, up: bool, released: tuple[float, float] | None
-    ) -> tuple[float | None, Vector | None]:
-        if self._polyhedron is None:
-            self._polyhedron = Polyhedron(
-                self._shape,
-                self._base,
-                self._low,
-                self._high,
-                self._warm,
-            )
-        one = np.array([line])
-        if released is not None:
-            self._polyhedron.limit(one, np.array([released[0]]), np.array([released[1]]))
-        try:
-            found = self._polyhedron.end(line, up)
-            if isinstance(found, Lost):
-                return None, None
-            if found.ray is not None:
-                return math.inf if up else -math.inf, None
-        finally:
-            if released is not None:
-                self._polyhedron.limit(one, self._low[one], self._high[one])
-        step = np.zeros(self._base.size)
-        step[self._polyhedron.lines] = found.step
-        return float(self._base[line] + step[line]), step

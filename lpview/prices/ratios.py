@@ -110,21 +110,23 @@ class Ratios:
     """That follower, -1 without one."""
     upward: Mask
     """Whether it rises there."""
-    alone: Mask
-    """Whether all other followers have room there."""
     is_end: Mask
     """Whether the rate is proved to change there, or the move to end."""
     is_last: Mask
     """Whether the move is proved to end there."""
+    goes_on: Mask
+    """Whether it is proved to go on there, at whatever rate."""
 
 
-def ratios(mirror: Mirror, moved: Index) -> Ratios:
-    """Move each line on its own, both ways."""
+def ratios(mirror: Mirror, moved: Index, clean: tuple[Mask, Mask]) -> Ratios:
+    """Move each line on its own, both ways.
+
+    ``clean`` are the helpers that can rise and fall from where they are (`clean_helpers`).
+    """
     k = moved.size
     distance, stopper = np.full((2, k), np.inf), np.full((2, k), -1)
     upward, alone = np.zeros((2, k), bool), np.zeros((2, k), bool)
     up, down = mirror.room_up[mirror.followers], mirror.room_down[mirror.followers]
-    tight = (up == 0) | (down == 0)
     at = slice(0, 0)
     for block, directions in mirror.directions(moved):
         at = slice(at.stop, at.stop + block.size)
@@ -140,11 +142,29 @@ def ratios(mirror: Mirror, moved: Index) -> Ratios:
             stopped = np.isfinite(least)
             stopper[way, at] = np.where(stopped, mirror.followers[first], -1)
             upward[way, at] = turned[first, columns] > 0
-            resting = (turned[tight] == 0).any(axis=0)
             close = steps <= least * (1 + TIE) + 1e-12
-            alone[way, at] = stopped & ~resting & (np.count_nonzero(close, axis=0) == 1)
-    is_end, is_last = _proofs(mirror, stopper, upward)
-    return Ratios(distance, stopper, upward, alone, is_end, is_last)
+            alone[way, at] = stopped & (np.count_nonzero(close, axis=0) == 1)
+    is_free = mirror.rise_free, mirror.fall_free
+    is_end = _unpushed(mirror, stopper, upward, is_free)
+    is_last = _unpushed(mirror, stopper, upward, (mirror.rise, mirror.fall))
+    passes = (upward & mirror.passes_up[stopper]) | (~upward & mirror.passes_down[stopper])
+    pushed = (stopper >= 0) & ~_unpushed(mirror, stopper, upward, clean)
+    return Ratios(distance, stopper, upward, is_end, is_last & ~passes, alone & (passes | pushed))
+
+
+def clean_helpers(mirror: Mirror) -> tuple[Mask, Mask]:
+    """Helpers that can rise, and fall, by some amount: no follower at its limit objects."""
+    rise, fall = mirror.rise.copy(), mirror.fall.copy()
+    tight = (mirror.room_up == 0) | (mirror.room_down == 0)
+    followers = mirror.followers[tight[mirror.followers]]
+    helpers = mirror.helpers
+    for block, directions in mirror.answers(followers):
+        entries = -directions[helpers]
+        no_up, no_down = mirror.room_up[block] == 0, mirror.room_down[block] == 0
+        up, down = entries > 0, entries < 0
+        rise[helpers] &= ~((up & no_up) | (down & no_down)).any(axis=1)
+        fall[helpers] &= ~((down & no_up) | (up & no_down)).any(axis=1)
+    return rise, fall
 
 
 def _steps(E: Vector, up: Vector, down: Vector) -> Vector:
@@ -156,33 +176,31 @@ def _steps(E: Vector, up: Vector, down: Vector) -> Vector:
     return steps
 
 
-def _proofs(mirror: Mirror, stopper: Index, upward: Mask) -> tuple[Mask, Mask]:
-    """Whether nothing free, and nothing at all, pushes each stopper back."""
+def unpushed(mirror: Mirror, followers: Index, by: tuple[Mask, Mask]) -> Mask:
+    """Whether none of these helpers (that rise, that fall) moves each follower on.
+
+    The first axis says whether it would fall (0) or rise (1); shape ``(2, k)``.
+    """
+    every = np.stack([followers, followers])
+    upward = np.stack([np.ones(followers.size, bool), np.zeros(followers.size, bool)])
+    # A rising stopper that nothing pushes back cannot fall, and the reverse.
+    return _unpushed(mirror, every, upward, by)
+
+
+def _unpushed(mirror: Mirror, stopper: Index, upward: Mask, by: tuple[Mask, Mask]) -> Mask:
+    """Whether none of these helpers (that rise, that fall) pushes a stopper back."""
     distinct = np.unique(stopper[stopper >= 0])
-    helpers = mirror.helpers
-    free, any_ = np.ones((2, distinct.size), bool), np.ones((2, distinct.size), bool)
+    rise, fall = by[0][mirror.helpers], by[1][mirror.helpers]
+    unpushed = np.ones((2, distinct.size), bool)
     at = slice(0, 0)
     for block, directions in mirror.answers(distinct):
         at = slice(at.stop, at.stop + block.size)
-        entries = -directions[helpers]
-        positive, negative = entries > 0, entries < 0
-        for rising in (0, 1):
-            # A rising stopper is pushed back by what makes it fall.
-            helps = (negative, positive) if rising else (positive, negative)
-            free[rising, at] = ~_pushes(helps, mirror.rise_free[helpers], mirror.fall_free[helpers])
-            any_[rising, at] = ~_pushes(helps, mirror.rise[helpers], mirror.fall[helpers])
+        entries = -directions[mirror.helpers]
+        makes_rise = (entries[rise] > 0).any(axis=0) | (entries[fall] < 0).any(axis=0)
+        makes_fall = (entries[rise] < 0).any(axis=0) | (entries[fall] > 0).any(axis=0)
+        unpushed[0, at], unpushed[1, at] = ~makes_rise, ~makes_fall
+    result = np.zeros(stopper.shape, bool)
     stopped = stopper >= 0
-    is_end, is_last = np.zeros(stopper.shape, bool), np.zeros(stopper.shape, bool)
     where: Index = np.searchsorted(distinct, stopper[stopped])
-    rises = upward[stopped].astype(int)
-    is_end[stopped], is_last[stopped] = free[rises, where], any_[rises, where]
-    is_last &= ~np.where(upward, mirror.passes_up[stopper], mirror.passes_down[stopper])
-    return is_end, is_last
-
-
-def _pushes(helps: tuple[Mask, Mask], rise: Mask, fall: Mask) -> Mask:
-    by_rising, by_falling = helps
-    pushes: Mask = (by_rising & rise[:, None]).any(axis=0) | (by_falling & fall[:, None]).any(
-        axis=0
-    )
-    return pushes
+    result[stopped] = unpushed[upward[stopped].astype(int), where]
+    return result

@@ -8,8 +8,11 @@ and rows are solved for in blocks, each as a direction over all lines.
 from __future__ import annotations
 
 from collections.abc import Iterator
+from functools import cached_property
+from typing import Any
 
 import numpy as np
+from scipy.sparse import csr_array
 
 from lpview.basis import BasisMatrix
 from lpview.model import Vector
@@ -20,6 +23,10 @@ BLOCK_NUMBERS = 4_000_000
 
 NOISE = 1e-11
 """Entries of a direction below this times its largest entry are rounding."""
+
+
+EXPLICIT = 2500
+"""Bases of up to so many columns are inverted once; that pays after some hundred solves."""
 
 
 class Tableau:
@@ -44,7 +51,7 @@ class Tableau:
         x = np.zeros((self.lines.lp.n, own.shape[1]))
         x[self._resting] = own[m + self._resting]
         sides = own[matrix.rows] - self._into_rows @ x[self._resting]
-        x[matrix.columns] = matrix.plan(sides)
+        x[matrix.columns] = self._plan(sides)
         rows = self._A @ x
         rows[matrix.rows] = own[matrix.rows]
         return _cleaned(np.concatenate([rows, x]))
@@ -55,10 +62,35 @@ class Tableau:
         y = np.zeros((m, own.shape[1]))
         y[self._basic_rows] = own[self._basic_rows]
         costs = -own[m + matrix.columns] - self._into_columns @ y[self._basic_rows]
-        y[matrix.rows] = matrix.prices(costs)
+        y[matrix.rows] = self._dual_values(costs)
         z = -(self._transposed @ y)
         z[matrix.columns] = own[m + matrix.columns]
         return _cleaned(np.concatenate([y, z]))
+
+    @cached_property
+    def _inverse(self) -> Any:
+        """``A[R, C]`` inverted: sparse where that is quicker to apply, else dense."""
+        inverse = self._matrix.plan(np.eye(self._matrix.rows.size))
+        inverse = _cleaned(inverse)
+        sparse = csr_array(inverse)
+        return sparse if sparse.nnz < 0.1 * inverse.size else inverse
+
+    @cached_property
+    def _inverse_transposed(self) -> Any:
+        inverse = self._inverse.T
+        return inverse.tocsr() if hasattr(inverse, "tocsr") else np.ascontiguousarray(inverse)
+
+    def _plan(self, sides: Vector) -> Vector:
+        if min(*sides.shape) <= 2 or sides.shape[0] > EXPLICIT:
+            return self._matrix.plan(sides)
+        plan: Vector = self._inverse @ sides
+        return plan
+
+    def _dual_values(self, costs: Vector) -> Vector:
+        if min(*costs.shape) <= 2 or costs.shape[0] > EXPLICIT:
+            return self._matrix.prices(costs)
+        prices: Vector = self._inverse_transposed @ costs
+        return prices
 
     def value_directions(self, nonbasic: Index) -> Iterator[tuple[Index, Vector]]:
         """Columns of ``T``: blocks of nonbasic lines with their directions, one a column."""

@@ -46,9 +46,7 @@ class _WarmHighs:
 
     def set_rows(self, index: Index, low: Vector, high: Vector) -> None:
         shift = self._scaling.row[index]
-        low, high = _shifted(low, shift), _shifted(high, shift)
-        for row, *ends in zip(index.tolist(), low.tolist(), high.tolist(), strict=True):
-            self._highs.changeRowBounds(row, *ends)
+        self._highs.changeRowsBounds(len(index), index, _shifted(low, shift), _shifted(high, shift))
 
     def least(self, index: Index, costs: Vector) -> Vertex | Descent | Lost:
         highs = self._highs

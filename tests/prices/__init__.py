@@ -1,0 +1,1 @@
+"""Tests of the rates and ranges around an optimum."""
