@@ -6,9 +6,11 @@ far each one-sided rate holds, and whether zero slack is shared by all optimal p
 """
 
 from lpview.prices.results import LinePrices, Move, Moves, NoPrices, Then, ZeroSlack
+from lpview.prices.together import Alone, Together, move_together
 from lpview.prices.work import PlanPoint, PricePoint, Prices, work_out
 
 __all__ = [
+    "Alone",
     "LinePrices",
     "Move",
     "Moves",
@@ -17,6 +19,8 @@ __all__ = [
     "PricePoint",
     "Prices",
     "Then",
+    "Together",
     "ZeroSlack",
+    "move_together",
     "work_out",
 ]

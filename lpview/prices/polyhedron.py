@@ -16,7 +16,7 @@ from scipy.sparse import csr_array
 
 from lpview.model import Vector
 from lpview.prices.lines import Index, Lines, Mask
-from lpview.warm import Box, Descent, Lost, Vertex, WarmMaker
+from lpview.warm import Box, Descent, Lost, Vertex, WarmMaker, WarmModel
 
 LONG = 1e-6
 """A direction is a ray of a line if, cut off at 1, it moves the line at least so far."""
@@ -106,8 +106,8 @@ class Polyhedron:
         self._base = base[self.lines]
         self._low, self._high = low[self.lines], high[self.lines]
         self._model = warm(shape.G, self._box())
-        self._warm, self._base_of_all = warm, base
-        self._cone: Polyhedron | None = None
+        self._warm = warm
+        self._cone: WarmModel | None = None
         self._every = np.arange(self._k, dtype=np.int32)
 
     def _box(self) -> Box:
@@ -122,6 +122,7 @@ class Polyhedron:
     def limit(self, lines: Index, low: Vector, high: Vector) -> None:
         """Give some lines other limits, which must include the base."""
         at = self._position[lines]
+        self._low[at], self._high[at], self._cone = low, high, None
         base = self._base[at]
         low, high = np.minimum(low - base, 0.0), np.maximum(high - base, 0.0)
         free = at < self._k
@@ -132,34 +133,21 @@ class Polyhedron:
 
     def end(self, line: int, greatest: bool) -> End | Lost:
         """Where one line is least or greatest."""
+        return self._found(*self._entry(line, greatest))
+
+    def _entry(self, line: int, greatest: bool) -> tuple[NDArray[np.int32], Vector]:
+        """The costs whose least sum is wanted, by variable."""
         position = int(self._position[line])
         sign = -1.0 if greatest else 1.0
         if position < self._k:
-            return self._found(np.array([position], np.int32), np.array([sign]))
+            return np.array([position], np.int32), np.array([sign])
         G, row = self.shape.G, position - self._k
         part = slice(G.indptr[row], G.indptr[row + 1])
-        return self._found(G.indices[part].astype(np.int32), sign * G.data[part])
+        return G.indices[part].astype(np.int32), sign * G.data[part]
 
     def ray(self, line: int, greatest: bool) -> End | None:
-        """A ray along which one line goes on for ever, from the known point, or None.
-
-        Asked of the recession cone, cut off at 1, so that nothing rests on rays that a
-        solver may or may not return.
-        """
-        if self._cone is None:
-            low = np.where(np.isfinite(self._low), 0.0, -1.0)
-            high = np.where(np.isfinite(self._high), 0.0, 1.0)
-            zero = np.zeros_like(self._base_of_all)
-            low_of_all, high_of_all = zero.copy(), zero.copy()
-            low_of_all[self.lines], high_of_all[self.lines] = low, high
-            self._cone = Polyhedron(self.shape, zero, low_of_all, high_of_all, self._warm)
-        found = self._cone.end(line, greatest)
-        if isinstance(found, Lost):
-            return None
-        length = abs(float(found.step[self._position[line]]))
-        if length < LONG:
-            return None
-        return End(np.zeros(self.lines.size), found.step / length)
+        """A ray along which one line goes on for ever, from the known point, or None."""
+        return self._ray(*self._entry(line, greatest))
 
     def least_sum(self, weights: Vector) -> End | Lost:
         """Where a weighted sum of all lines (in the order of ``lines``) is least."""
@@ -172,7 +160,26 @@ class Polyhedron:
             return End(self._entries(found.x), None)
         if isinstance(found, Descent):
             return End(self._entries(found.x), self._entries(found.ray))
-        return found
+        return self._ray(index, costs) or found
+
+    def _ray(self, index: NDArray[np.int32], costs: Vector) -> End | None:
+        """A ray along which the costs fall, from the known point.
+
+        Asked of the recession cone, cut off at 1, so that nothing rests on rays that a
+        solver may or may not return.
+        """
+        if self._cone is None:
+            low = np.where(np.isfinite(self._low), 0.0, -1.0)
+            high = np.where(np.isfinite(self._high), 0.0, 1.0)
+            k = self._k
+            self._cone = self._warm(self.shape.G, Box(low[k:], high[k:], low[:k], high[:k]))
+        found = self._cone.least(index, costs)
+        if not isinstance(found, Vertex):
+            return None
+        length = -float(costs @ found.x[index])
+        if length < LONG:
+            return None
+        return End(np.zeros(self.lines.size), self._entries(found.x) / length)
 
     def _entries(self, d: Vector) -> Vector:
         return np.concatenate([d, self.shape.G @ d])

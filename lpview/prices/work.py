@@ -61,13 +61,14 @@ class Prices:
     """
 
     def __init__(self, lines: Lines, tableau: Tableau, found: Partition, warm: WarmMaker) -> None:
-        self.lines, self.partition = lines, found
+        self.lines, self.partition, self.warm = lines, found, warm
         self._sign = lines.lp.sense.sign
         limits = lines.price_limits()
+        self.price_limits = _only(found.has_price, limits, np.zeros_like(lines.price))
         self._prices = Face(
             price_shape(lines, found.price_moves),
             lines.price,
-            _only(found.has_price, limits, np.zeros_like(lines.price)),
+            self.price_limits,
             found.price_moves,
             lines.price_size,
             warm,
