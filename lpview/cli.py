@@ -6,9 +6,16 @@ import argparse
 import os
 import sys
 from collections.abc import Sequence
-from functools import partial
+from importlib import import_module
 
 from lpview import __version__
+from lpview.curve_options import add_curve_options
+from lpview.price_options import (
+    add_line_options,
+    add_plans_options,
+    add_prices_options,
+    wrong_use,
+)
 
 DONE, FAILED, USAGE, NO_OPTIMUM, NOT_ESTABLISHED = 0, 1, 2, 3, 4
 """Exit statuses of every command; README.md says what each means."""
@@ -22,8 +29,9 @@ def main(arguments: Sequence[str] | None = None) -> int:
     given = list(sys.argv[1:] if arguments is None else arguments)
     parser = _parser()
     options = parser.parse_args(_with_command(given))
-    if options.command == "check":
-        _require_one_form(parser, options)
+    problem = _wrong_use(options)
+    if problem:
+        parser.error(problem)
     try:
         return _run(options)
     except KeyboardInterrupt:
@@ -69,9 +77,8 @@ def _run(options: argparse.Namespace) -> int:
         from lpview.screen.launch import launch
 
         return launch(options)
-    from lpview import commands
-
-    statuses: list[int] = getattr(commands, options.command)(options)
+    module = import_module(_WHERE.get(options.command, "lpview.commands"))
+    statuses: list[int] = getattr(module, options.command)(options)
     return worst(statuses)
 
 
@@ -88,9 +95,19 @@ def _complain(text: str, status: int) -> int:
 _COMMANDS = {
     "open": "review a model at the keyboard (the command that MODEL alone is short for)",
     "check": "solve a model and check every KKT condition of the answer",
+    "prices": "find which prices can be trusted, both ways and how far",
+    "plans": "find which other plans are just as good",
+    "curve": "follow the optimal objective as one number of the model moves",
     "dual": "write the dual linear program as CSV blocks",
     "convert": "write a model as canonical CSV blocks",
 }
+
+_WHERE = {
+    "prices": "lpview.price_commands",
+    "plans": "lpview.plan_commands",
+    "curve": "lpview.curve_command",
+}
+"""Modules of the commands that have one of their own."""
 
 
 def _parser() -> argparse.ArgumentParser:
@@ -113,34 +130,44 @@ def _parser() -> argparse.ArgumentParser:
         )
         if name != "open":
             command.add_argument("--output", metavar="FILE", help="write here, not to the screen")
-    _add_check_options(made["check"])
-    made["check"].add_argument("--format", choices=("text", "markdown", "json"), default="text")
-    made["check"].add_argument("--full", action="store_true", help="list every line, however many")
-    _add_line_options(made["check"])
-    _add_check_options(made["open"])
+    for name in ("check", "open", *_WHERE):
+        _add_solve_options(made[name])
+    _add_report_options(made["check"])
+    add_prices_options(made["prices"])
+    add_plans_options(made["plans"])
+    add_curve_options(made["curve"])
+    for name in ("check", "open"):
+        _add_route_options(made[name])
     made["open"].add_argument(
         "--ascii", action="store_true", help="draw all marks with plain characters"
     )
-    made["open"].set_defaults(format="text", full=False)
+    made["open"].set_defaults(format="text", full=False, prices=False)
     return parser
 
 
-def _add_check_options(check: argparse.ArgumentParser) -> None:
-    check.add_argument(
+def _add_solve_options(command: argparse.ArgumentParser) -> None:
+    """What every command that solves can be told."""
+    command.add_argument(
         "--tolerance", type=_positive, default=1e-9, metavar="SIZE",
         help="largest scaled residual that passes (default 1e-9)",
     )  # fmt: skip
-    check.add_argument(
+    command.add_argument(
         "--zero", type=_positive, default=1e-9, metavar="SIZE",
         help="scaled size up to which a slack or a price counts as zero (default 1e-9)",
     )  # fmt: skip
-    check.add_argument(
+    command.add_argument(
         "--method", choices=("choose", "simplex", "interior-point"), default="choose"
     )
+    command.add_argument("--time-limit", type=_positive, metavar="SECONDS")
+    # Prices need a basis, and no second route to them.
+    command.set_defaults(no_crossover=False, second_route="never")
+
+
+def _add_route_options(check: argparse.ArgumentParser) -> None:
+    """What else the check can be told of how to solve."""
     check.add_argument(
         "--no-crossover", action="store_true", help="end an interior-point run without a basis"
     )
-    check.add_argument("--time-limit", type=_positive, metavar="SECONDS")
     route = check.add_mutually_exclusive_group()
     route.add_argument(
         "--second-route", dest="second_route", action="store_const", const="always",
@@ -153,32 +180,38 @@ def _add_check_options(check: argparse.ArgumentParser) -> None:
     check.set_defaults(second_route="if quick")
 
 
-def _add_line_options(check: argparse.ArgumentParser) -> None:
-    for kind in ("row", "column"):
-        check.add_argument(
-            f"--{kind}", dest="lines", action="append", default=[], metavar="NAME",
-            type=partial(_line, kind),
-            help=f"print the ledger of this {kind} instead of the report; may be repeated",
-        )  # fmt: skip
+def _add_report_options(check: argparse.ArgumentParser) -> None:
+    """What the check can be told of its report."""
+    check.add_argument("--format", choices=("text", "markdown", "json"), default="text")
+    check.add_argument("--full", action="store_true", help="list every line, however many")
+    add_line_options(check, "print the ledger of this {} instead of the report; may be repeated")
     check.add_argument(
         "--families", action="store_true",
         help="print families of lines, grouped by what their names begin with",
     )  # fmt: skip
+    check.add_argument(
+        "--prices", action="store_true",
+        help="find out which prices are not unique, and how far their rates hold",
+    )  # fmt: skip
 
 
-def _line(kind: str, name: str) -> tuple[str, str]:
-    return kind, name
-
-
-def _require_one_form(parser: argparse.ArgumentParser, options: argparse.Namespace) -> None:
-    """Ledgers, families and JSON are three different things to print."""
+def _wrong_use(options: argparse.Namespace) -> str:
+    """What is wrong with options that are right one by one, or an empty string."""
+    if options.command in _WHERE:
+        return wrong_use(options)
+    if options.command != "check":
+        return ""
+    # Ledgers, families and JSON are three different things to print.
     if options.format == "json" and (options.lines or options.families):
-        parser.error(
+        return (
             "--row, --column and --families are printed as text or markdown; "
             "json has every line anyway"
         )
     if options.lines and options.families:
-        parser.error("expected --row and --column, or --families, got both")
+        return "expected --row and --column, or --families, got both"
+    if options.prices and options.families:
+        return "expected --prices or --families, got both"
+    return ""
 
 
 def _positive(text: str) -> float:

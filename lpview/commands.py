@@ -9,8 +9,11 @@ import argparse
 import os
 import shlex
 import sys
-from collections.abc import Callable
+import time
+from collections.abc import Callable, Sequence
+from dataclasses import dataclass
 from pathlib import Path
+from typing import TYPE_CHECKING
 
 from lpview import cli
 from lpview.blocks import InputError, Reading, read_model, read_model_bytes, write_blocks
@@ -23,20 +26,28 @@ from lpview.report.document import Document
 from lpview.run import Method, SolveSettings, Watch
 from lpview.scaling import NotRepresentableError
 
+if TYPE_CHECKING:  # the check alone starts sooner without them
+    from lpview.priced import Priced
+    from lpview.prices import NoPrices
+
+
+Line = tuple[str, str]
+"""``"row"`` or ``"column"``, and a name."""
+
 
 def check(options: argparse.Namespace) -> list[int]:
     """``lpview check``: solve and check each model, write one report for all."""
-    found: list[Examination] = []
+    found: list[Checked] = []
     statuses: list[int] = []
     for source in options.models:
         try:
-            found.append(_examined(source, options))
-            statuses.append(status(found[-1]))
+            found.append(_checked(source, options))
+            statuses.append(_status(found[-1]))
         except (InputError, NotRepresentableError) as error:
             sys.stderr.write(f"{error}\n")
             statuses.append(cli.USAGE)
     if found:
-        _write(_rendered(found, options), options.output)
+        write(_rendered(found, options), options.output)
     return statuses
 
 
@@ -45,14 +56,42 @@ def dual(options: argparse.Namespace) -> list[int]:
     from lpview.dual import build_dual
 
     program = build_dual(_read(options.model)[0].model).program
-    _write(write_blocks(program), options.output)
+    write(write_blocks(program), options.output)
     return [cli.DONE]
 
 
 def convert(options: argparse.Namespace) -> list[int]:
     """``lpview convert``: the same model as canonical blocks."""
-    _write(write_blocks(_read(options.model)[0].model), options.output)
+    write(write_blocks(_read(options.model)[0].model), options.output)
     return [cli.DONE]
+
+
+@dataclass(frozen=True, eq=False)
+class Checked:
+    """One model's examination, and its prices where they were asked for and there are any."""
+
+    found: Examination
+    """What the check came to; its marks know of the prices."""
+    priced: Priced | NoPrices | None = None
+    """The prices; None where they were not asked for, or there is no answer."""
+
+
+def _checked(source: str, options: argparse.Namespace) -> Checked:
+    watch, started = Watch(), time.monotonic()
+    found = examined(source, options, watch, options.lines)
+    if not options.prices or not isinstance(found, Optimal):
+        return Checked(found)
+    from lpview.price_commands import worked_out
+
+    return Checked(*worked_out(found, options, watch, started))
+
+
+def _status(checked: Checked) -> int:
+    if checked.priced is None:
+        return status(checked.found)
+    from lpview.price_commands import price_status
+
+    return cli.worst([status(checked.found), price_status(checked.priced)])
 
 
 def _read(source: str) -> tuple[Reading, bytes | None]:
@@ -63,16 +102,21 @@ def _read(source: str) -> tuple[Reading, bytes | None]:
     return read_model(source), None
 
 
-def _examined(source: str, options: argparse.Namespace) -> Examination:
+def examined(
+    source: str, options: argparse.Namespace, watch: Watch, lines: Sequence[Line] = ()
+) -> Examination:
+    """Read, solve and check a model, with progress on a terminal.
+
+    ``lines`` are needed later; raises `InputError` at once where the model lacks one.
+    """
     from lpview.progress import watched
     from lpview.solver import solve
 
     reading, data = _read(source)
-    _lines(reading.model, source, options)
+    lines_asked(reading.model, source, lines)
     if data is not None:
         source = _saved(data, options.output)
     request = _request(source, options)
-    watch = Watch()
     label = reading.model.name
     return watched(lambda: examine(reading, request, solve, watch), watch, label)
 
@@ -117,7 +161,8 @@ def _request(source: str, options: argparse.Namespace) -> Request:
 
 def _command(source: str, options: argparse.Namespace) -> str:
     """The command that reproduces the report: every option that is not a default."""
-    words = ["lpview", "check", source]
+    command = "check" if options.command == "open" else options.command
+    words = ["lpview", command, source]
     for name, default in (("tolerance", 1e-9), ("zero", 1e-9), ("time_limit", None)):
         if getattr(options, name) != default:
             words += [f"--{name.replace('_', '-')}", number_text(getattr(options, name))]
@@ -125,7 +170,8 @@ def _command(source: str, options: argparse.Namespace) -> str:
         words += ["--method", options.method]
     words += ["--no-crossover"] * options.no_crossover + ["--full"] * options.full
     route = {"always": ["--second-route"], "never": ["--no-second-route"]}
-    words += route.get(options.second_route, [])
+    words += route.get(options.second_route, []) if command == "check" else []
+    words += ["--prices"] * (command == "check" and options.prices)
     if options.format != "text":
         words += ["--format", options.format]
     return shlex.join(words)
@@ -138,19 +184,30 @@ def status(found: Examination) -> int:
     return cli.NO_OPTIMUM if isinstance(found, NoOptimum) else cli.NOT_ESTABLISHED
 
 
-def _rendered(found: list[Examination], options: argparse.Namespace) -> str:
+def _rendered(checked: list[Checked], options: argparse.Namespace) -> str:
     if options.format == "json":
         from lpview.report import json
 
-        return json.render(found if len(options.models) > 1 else found[0])
+        found = [one.found for one in checked]
+        added = []
+        if options.prices:
+            from lpview.report import price_json
+
+            added = [price_json.fields(one.priced) for one in checked]
+        return json.render(found if len(options.models) > 1 else found[0], added)
+    return "\n".join(rendered(_document(one, options), options.format) for one in checked)
+
+
+def rendered(document: Document, form: str) -> str:
+    """A document as text or Markdown."""
     from lpview.report import markdown, text
 
-    render = markdown.render if options.format == "markdown" else text.render
-    return "\n".join(render(_document(one, options)) for one in found)
+    return (markdown.render if form == "markdown" else text.render)(document)
 
 
-def _document(found: Examination, options: argparse.Namespace) -> Document:
+def _document(checked: Checked, options: argparse.Namespace) -> Document:
     """What was asked for: the report, its families, or the ledgers of some lines."""
+    found, priced = checked.found, checked.priced
     if options.families:
         from lpview.report.families import families_report
 
@@ -158,17 +215,26 @@ def _document(found: Examination, options: argparse.Namespace) -> Document:
     if options.lines:
         from lpview.report.ledger import ledger_report
 
-        return ledger_report(found, _lines(found.head.model, "", options), options.full)
+        lines = lines_asked(found.head.model, "", options.lines)
+        if priced is None:
+            return ledger_report(found, lines, options.full)
+        from lpview.report.prices import lines_of, problem
+
+        return ledger_report(found, lines, options.full, lines_of(priced), problem(priced))
     from lpview.report.check import report
 
-    return report(found, options.full)
+    if priced is None:
+        return report(found, options.full)
+    from lpview.report.prices import check_facts
+
+    return report(found, options.full, prices=check_facts(priced, options.full))
 
 
-def _lines(lp: LinearProgram, source: str, options: argparse.Namespace) -> list[int]:
+def lines_asked(lp: LinearProgram, source: str, asked: Sequence[Line]) -> list[int]:
     """Numbers of the lines asked for, as in `lpview.kkt`; raises `InputError`."""
     index = {"row": (lp.rows, 0), "column": (lp.columns, lp.m)}
     lines, mistakes = [], []
-    for kind, name in options.lines:
+    for kind, name in asked:
         names, first = index[kind]
         if name in names:
             lines.append(first + names.index(name))
@@ -181,7 +247,8 @@ def _lines(lp: LinearProgram, source: str, options: argparse.Namespace) -> list[
     return lines
 
 
-def _write(text: str, output: str | None) -> None:
+def write(text: str, output: str | None) -> None:
+    """Write to a file, whole or not at all, or to standard output."""
     if output is not None:
         _replace(Path(output), text.encode())
         return

@@ -8,7 +8,7 @@ from __future__ import annotations
 
 import enum
 from collections.abc import Mapping
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 import numpy as np
 from numpy.typing import NDArray
@@ -31,6 +31,8 @@ class Flag(enum.Enum):
     """A complementary pair with slack and price both zero."""
     OTHER_PLAN = "possible other plan"
     """A nonbasic line whose price is zero."""
+    NOT_UNIQUE = "price not unique"
+    """The price is not the same in all optimal dual solutions."""
     VIOLATED = "violated"
     """The value lies outside its ends, beyond the tolerance."""
     WRONG_SIGN = "wrong sign"
@@ -41,6 +43,9 @@ class Flag(enum.Enum):
 
 NEED_BASIS = (Flag.DEGENERATE, Flag.OTHER_PLAN)
 """Flags that cannot be known for an answer without a basis."""
+
+NEED_PRICES = (Flag.NOT_UNIQUE,)
+"""Flags that are known only once prices have been worked out (`with_prices`)."""
 
 
 FAULTS = {
@@ -62,7 +67,8 @@ class Marks:
     paired: Mask
     """Lines with a complementary pair: neither equality rows nor fixed columns."""
     flags: Mapping[Flag, Mask]
-    """Lines that carry each flag; those of `NEED_BASIS` only with a basis."""
+    """Lines that carry each flag; those of `NEED_BASIS` only with a basis, those of
+    `NEED_PRICES` only with prices."""
 
     def of(self, line: int) -> tuple[Flag, ...]:
         """The flags of one line, in the order of `Flag`."""
@@ -96,6 +102,12 @@ def mark(
     for flag, condition in FAULTS.items():
         flags[flag] = ~(found.residuals[condition].scaled <= tolerance)
     return Marks(room, priced, paired, {flag: flags[flag] for flag in Flag if flag in flags})
+
+
+def with_prices(marks: Marks, not_unique: Mask) -> Marks:
+    """The same marks, with the lines whose price is not unique; shape ``(m + n,)``."""
+    flags = {**marks.flags, Flag.NOT_UNIQUE: not_unique}
+    return replace(marks, flags={flag: flags[flag] for flag in Flag if flag in flags})
 
 
 def _slack_is_zero(side: Side, zero: float) -> Mask:

@@ -17,16 +17,22 @@ QUIET_SECONDS = 1.0
 TICK_SECONDS = 0.1
 """How often the progress line changes."""
 
+SOLVING = ("solving", "iteration")
+"""What is done, and what counts it, unless something else is said."""
+
 Result = TypeVar("Result")
 
 
-def watched(work: Callable[[], Result], watch: Watch, label: str) -> Result:
+def watched(
+    work: Callable[[], Result], watch: Watch, label: str, doing: tuple[str, str] = SOLVING
+) -> Result:
     """Do ``work``, showing progress on standard error where that is a terminal.
 
     The first Ctrl-C sets ``watch.stop`` and waits for the work to end by itself;
     the second leaves at once with exit status 4. Exceptions of the work are raised here.
+    ``doing`` says what is done, and what ``watch.iterations`` counts.
     """
-    line = _ProgressLine(label, watch)
+    line = _ProgressLine(label, watch, doing)
 
     def on_interrupt(_signal: int, _frame: object) -> None:
         if watch.stop.is_set():
@@ -36,20 +42,20 @@ def watched(work: Callable[[], Result], watch: Watch, label: str) -> Result:
 
     before = signal.signal(signal.SIGINT, on_interrupt)
     try:
-        doing = Meanwhile(work)
-        while doing.is_running(TICK_SECONDS):
+        running = Meanwhile(work)
+        while running.is_running(TICK_SECONDS):
             line.show()
     finally:
         line.clear()
         signal.signal(signal.SIGINT, before)
-    return doing.result()
+    return running.result()
 
 
 class _ProgressLine:
     """One line of a terminal, rewritten in place."""
 
-    def __init__(self, label: str, watch: Watch) -> None:
-        self._label, self._watch = label, watch
+    def __init__(self, label: str, watch: Watch, doing: tuple[str, str]) -> None:
+        self._label, self._watch, self._doing = label, watch, doing
         self._started = time.monotonic()
         self._shown = False
 
@@ -58,8 +64,9 @@ class _ProgressLine:
         seconds = time.monotonic() - self._started
         if seconds < QUIET_SECONDS or not sys.stderr.isatty():
             return
-        doing = "stopping" if self._watch.stop.is_set() else "solving"
-        text = f"{self._label}: {doing}, {seconds:.0f} s, iteration {self._watch.iterations}"
+        doing, counted = self._doing
+        doing = "stopping" if self._watch.stop.is_set() else doing
+        text = f"{self._label}: {doing}, {seconds:.0f} s, {counted} {self._watch.iterations}"
         sys.stderr.write(f"\r{text}\x1b[K")
         sys.stderr.flush()
         self._shown = True

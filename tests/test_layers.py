@@ -16,7 +16,11 @@ import pytest
 ROOT = Path(__file__).resolve().parents[1]
 PACKAGE = ROOT / "lpview"
 
-OUTER = ("lpview.__main__", "lpview.cli", "lpview.commands", "lpview.progress")
+OUTER = (
+    *("lpview.__main__", "lpview.cli", "lpview.commands", "lpview.progress"),
+    *("lpview.price_commands", "lpview.price_options", "lpview.plan_commands"),
+    *("lpview.curve_command", "lpview.curve_options"),
+)
 OUTER_PACKAGES = ("lpview.report", "lpview.screen")
 """What talks to people. Every other module is numeric, a new one too."""
 

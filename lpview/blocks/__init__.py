@@ -13,7 +13,7 @@ looks like a block line, since a data line has more cells than a block line.
 from lpview.blocks.mistakes import InputError, Mistake
 from lpview.blocks.names import name_problem
 from lpview.blocks.reader import Notes, Reading, read_model, read_model_bytes
-from lpview.blocks.writer import write_blocks
+from lpview.blocks.writer import write_blocks, write_values
 
 __all__ = [
     "InputError",
@@ -24,4 +24,5 @@ __all__ = [
     "read_model",
     "read_model_bytes",
     "write_blocks",
+    "write_values",
 ]

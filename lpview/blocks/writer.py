@@ -37,6 +37,16 @@ def write_blocks(lp: LinearProgram) -> str:
     return "\n".join("\n".join(block) + "\n" for block in blocks)
 
 
+def write_values(
+    block: str, columns: tuple[str, ...], values: Vector, *, sparse: bool = False
+) -> str:
+    """A plan as a block ``[x]``, or another value per column; zeros left out if ``sparse``."""
+    cells = _cells(columns)
+    places = np.flatnonzero(values) if sparse else np.arange(values.size)
+    lines = [f"{cells[k]},{number_text(float(values[k]))}" for k in places.tolist()]
+    return "\n".join([f"[{block}]", "column,value", *lines]) + "\n"
+
+
 def _check_names(lp: LinearProgram) -> None:
     mistakes = [
         Mistake(lp.name, problem, quoted(name), block=block, field=field)

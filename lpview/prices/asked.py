@@ -204,4 +204,4 @@ class Asked:
     def _reach(self, found: End, line: int, up: bool) -> float:
         if found.ray is not None:
             return math.inf if up else -math.inf
-        return float(self._base[line] + found.step[self._open().position(line)])
+        return float(self._base[line]) + self._open().step_of(found, line)

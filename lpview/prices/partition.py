@@ -30,6 +30,10 @@ RANK = 1e-9
 """Diagonal entries of a factorization below this times the largest count as zero."""
 
 
+class GivenUpError(Exception):
+    """The partition could not be found; nothing about it can be said."""
+
+
 @dataclass(frozen=True, eq=False)
 class Partition:
     """The strictly complementary partition, and how far the optimal faces reach."""
@@ -51,7 +55,15 @@ class Partition:
 
 
 def partition(lines: Lines, tableau: Tableau, warm: WarmMaker) -> Partition:
-    """Find the partition at an optimal basis."""
+    """Find the partition at an optimal basis.
+
+    Raises
+    ------
+    GivenUpError
+        The solver left a question open.
+    lpview.scaling.NotRepresentableError
+        The solver cannot be given the numbers.
+    """
     D = np.flatnonzero(lines.basic & lines.at_end)
     Z = np.flatnonzero(~lines.basic & ~lines.equal & (lines.price == 0))
     has_slack = ~lines.at_end & ~lines.equal
@@ -124,7 +136,7 @@ def _support(K: Vector, free: Mask, equal: Mask, warm: WarmMaker) -> tuple[Mask,
         wanted = (~in_u & ~free).astype(float) + (~in_Ku & ~equal).astype(float) @ K
         found = model.least(columns, -wanted)
         if not isinstance(found, Vertex):
-            return in_u, in_Ku
+            raise GivenUpError("the solver gave up on the optimal face")
         more_u = ~in_u & ~free & (found.x > POSITIVE)
         more_Ku = ~in_Ku & ~equal & (K @ found.x > POSITIVE)
         if not (more_u.any() or more_Ku.any()):

@@ -115,13 +115,18 @@ class Polyhedron:
         high = np.maximum(self._high - self._base, 0.0)
         return Box(low[self._k :], high[self._k :], low[: self._k], high[: self._k])
 
-    def position(self, line: int) -> int:
-        """Where a line stands among ``lines``."""
-        return int(self._position[line])
+    def step_of(self, end: End, line: int) -> float:
+        """How far one line is from the known point, 0 where it takes no part."""
+        position = int(self._position[line])
+        return float(end.step[position]) if position >= 0 else 0.0
 
     def limit(self, lines: Index, low: Vector, high: Vector) -> None:
-        """Give some lines other limits, which must include the base."""
-        at = self._position[lines]
+        """Give some lines other limits, which must include the base.
+
+        Lines that take no part stay where they are, whatever their limits.
+        """
+        part = self._position[lines] >= 0
+        at, low, high = self._position[lines[part]], low[part], high[part]
         self._low[at], self._high[at], self._cone = low, high, None
         base = self._base[at]
         low, high = np.minimum(low - base, 0.0), np.maximum(high - base, 0.0)
@@ -133,6 +138,8 @@ class Polyhedron:
 
     def end(self, line: int, greatest: bool) -> End | Lost:
         """Where one line is least or greatest."""
+        if self._position[line] < 0:
+            return End(np.zeros(self.lines.size), None)
         return self._found(*self._entry(line, greatest))
 
     def _entry(self, line: int, greatest: bool) -> tuple[NDArray[np.int32], Vector]:

@@ -2,8 +2,9 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable
+from collections.abc import Callable, Mapping
 from dataclasses import dataclass
+from types import MappingProxyType
 
 import numpy as np
 
@@ -12,7 +13,7 @@ from lpview.model import Vector
 from lpview.outcomes import Optimal
 from lpview.prices.intervals import GREATEST, LEAST, ZERO, Face
 from lpview.prices.lines import Lines, Mask, lines_of
-from lpview.prices.partition import Partition, partition
+from lpview.prices.partition import GivenUpError, Partition, partition
 from lpview.prices.polyhedron import price_shape, value_shape
 from lpview.prices.ranges import Ranges
 from lpview.prices.results import LinePrices, Move, Moves, NoPrices, ZeroSlack
@@ -94,6 +95,11 @@ class Prices:
     def price_dimension(self) -> int:
         """Dimension of the set of optimal dual solutions; 0 where there is only one."""
         return self.partition.price_dimension
+
+    @property
+    def examined(self) -> Mapping[int, LinePrices]:
+        """What is known so far, by line."""
+        return MappingProxyType(self._found)
 
     def line(self, line: int) -> LinePrices:
         """Everything about one line; found now if it has not been yet."""
@@ -215,6 +221,8 @@ def work_out(found: Optimal, warm: WarmMaker) -> Prices | NoPrices:
     tableau = Tableau(lines, matrix)
     try:
         return Prices(lines, tableau, partition(lines, tableau, warm), warm)
+    except GivenUpError as error:
+        return NoPrices(str(error))
     except NotRepresentableError as error:
         return NoPrices(f"its numbers do not fit the solver's: {error}")
 

@@ -5,32 +5,37 @@ from __future__ import annotations
 import numpy as np
 
 from lpview.basis import PriceDifference
-from lpview.marks import FAULTS, Flag
+from lpview.marks import FAULTS, NEED_PRICES, Flag
 from lpview.outcomes import BasisRoute, DualSolved, Optimal
 from lpview.polish import OwnNumbers
-from lpview.report.document import Block, Facts, Table
+from lpview.report.document import Block, Facts, Pairs, Table
 from lpview.report.names import fitted, line_name
 from lpview.report.numbers import count, in_full, number, residual
 from lpview.verdict import Verdict
 
 MOST_ROWS = 10
 """Zero-slack rows shown unless the full report is asked for."""
+FEWER_ROWS = 4
+"""So many fewer where prices are reported too."""
 MOST_FLAGGED = 10
 """Other flagged lines named unless the full report is asked for."""
 
 _PASSED = {True: "passed", False: "FAILED", None: "holds by definition"}
 
 
-def body(found: Optimal, full: bool, tables: tuple[Table, ...] = ()) -> tuple[Block, ...]:
+def body(
+    found: Optimal, full: bool, tables: tuple[Table, ...] = (), prices: Pairs = ()
+) -> tuple[Block, ...]:
     """Everything between the verdict and the provenance.
 
-    ``tables``, if any, stand in place of the zero-slack rows.
+    ``tables``, if any, stand in place of the zero-slack rows; facts about prices, if any,
+    stand with the flags, and leave room for fewer of these rows.
     """
     return (
         _conditions(found),
         Facts(_objectives(found) + _routes(found)),
-        *(tables or (_zero_slack_rows(found, full),)),
-        Facts(_flags(found, full)),
+        *(tables or (_zero_slack_rows(found, full, MOST_ROWS - FEWER_ROWS * bool(prices)),)),
+        Facts(_flags(found, full) + prices),
     )
 
 
@@ -118,12 +123,12 @@ def _agreement(found: Optimal, difference: PriceDifference) -> str:
     return f"prices probably not unique: {count(difference.beyond, 'row')} {verb}, {most}"
 
 
-def _zero_slack_rows(found: Optimal, full: bool) -> Table:
+def _zero_slack_rows(found: Optimal, full: bool, most: int) -> Table:
     lp, rows = found.head.model, found.measurement.rows
     zero = np.flatnonzero(found.marks.flags[Flag.ZERO_SLACK][: lp.m])
     worth = np.abs(rows.price * rows.end)
     order = zero[np.argsort(-worth[zero], kind="stable")]
-    shown = order if full else order[:MOST_ROWS]
+    shown = order if full else order[:most]
     title = f"zero-slack rows by |dual value times right-hand side|: {shown.size} of {zero.size}"
     cells = tuple(
         (
@@ -149,6 +154,8 @@ def _flags(found: Optimal, full: bool) -> tuple[tuple[str, str], ...]:
         faults += [f"{flag.value} {text}"] if found.marks.flags[flag].any() else []
     lines = [("faults", "; ".join(faults) or f"none ({', '.join(f.value for f in FAULTS)})")]
     for flag in (flag for flag in Flag if flag not in FAULTS):
+        if flag in NEED_PRICES and flag not in found.marks.flags:
+            continue
         listed = full or flag is not Flag.ZERO_SLACK
         text, named = _flagged(found, flag, left * listed)
         left -= named

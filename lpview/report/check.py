@@ -9,7 +9,7 @@ from lpview.model import LinearProgram
 from lpview.outcomes import Examination, Head, NoOptimum, NotEstablished, Optimal, Stopped
 from lpview.repair.search import Infeasible
 from lpview.report import answer, certificate
-from lpview.report.document import Block, Command, Document, Facts, Sentence, Table
+from lpview.report.document import Block, Command, Document, Facts, Pairs, Sentence, Table
 from lpview.report.names import safe
 from lpview.report.numbers import count, residual
 
@@ -19,17 +19,23 @@ CAUTION = (
 """What every report ends with."""
 
 
-def report(found: Examination, full: bool = False, tables: tuple[Table, ...] = ()) -> Document:
+def report(
+    found: Examination,
+    full: bool = False,
+    tables: tuple[Table, ...] = (),
+    prices: Pairs = (),
+) -> Document:
     """The report of an examination; at most 40 lines of text unless ``full``.
 
-    ``tables``, if any, stand in place of an answer's zero-slack rows.
+    ``tables``, if any, stand in place of an answer's zero-slack rows. ``prices`` are facts
+    about an answer's prices, where these were asked for.
     """
     head = found.head
     return (
         Sentence(f"{_title(head)}: {verdict(found)}", strong=True),
         Sentence("; ".join([shape(head.model), *_notes(head)])),
-        *_body(found, full, tables),
-        Facts(_provenance(head)),
+        *_body(found, full, tables, prices),
+        Facts(provenance(head)),
         Command("reproduce", head.request.command),
         Sentence(CAUTION),
     )
@@ -84,9 +90,11 @@ def _notes(head: Head) -> list[str]:
     return ["noticed while reading: " + ", ".join(parts)] if parts else []
 
 
-def _body(found: Examination, full: bool, tables: tuple[Table, ...]) -> tuple[Block, ...]:
+def _body(
+    found: Examination, full: bool, tables: tuple[Table, ...], prices: Pairs
+) -> tuple[Block, ...]:
     if isinstance(found, Optimal):
-        return answer.body(found, full, tables)
+        return answer.body(found, full, tables, prices)
     if isinstance(found, NoOptimum):
         return certificate.body(found, full)
     if isinstance(found, NotEstablished):
@@ -106,7 +114,7 @@ def _advice(found: Stopped) -> str:
     )
 
 
-def _provenance(head: Head) -> tuple[tuple[str, str], ...]:
+def provenance(head: Head) -> Pairs:
     """What it takes to get the same report again."""
     request, run = head.request, head.run
     options = ", ".join(f"{name} {value}" for name, value in run.options.items())

@@ -15,11 +15,15 @@ class Sentence:
     """Whether it is a verdict or a heading."""
 
 
+Pairs = tuple[tuple[str, str], ...]
+"""Labels and texts."""
+
+
 @dataclass(frozen=True)
 class Facts:
     """Labelled facts, one a line."""
 
-    pairs: tuple[tuple[str, str], ...]
+    pairs: Pairs
     """Label and text of each."""
 
 

@@ -5,6 +5,7 @@ from __future__ import annotations
 import json
 import math
 import platform
+from collections.abc import Mapping, Sequence
 from typing import Any
 
 import numpy as np
@@ -29,9 +30,16 @@ FORMAT = 1
 """Raised only when a documented field changes its meaning."""
 
 
-def render(found: Examination | list[Examination]) -> str:
-    """One object, or an array of them where several models were asked for."""
-    content = [_object(one) for one in found] if isinstance(found, list) else _object(found)
+def render(found: Examination | list[Examination], added: Sequence[Mapping[str, Any]] = ()) -> str:
+    """One object, or an array of them where several models were asked for.
+
+    ``added``, if any, has further fields for each examination.
+    """
+    several = found if isinstance(found, list) else [found]
+    objects = [_object(one) for one in several]
+    for one, more in zip(objects, added, strict=bool(added)):
+        one.update(more)
+    content = objects if isinstance(found, list) else objects[0]
     return json.dumps(content, ensure_ascii=False, indent=1, allow_nan=False) + "\n"
 
 
@@ -92,10 +100,10 @@ def _model(head: Head) -> dict[str, Any]:
 def _objective(found: Optimal) -> dict[str, Any]:
     measured = found.measurement
     return {
-        "primal": _plain(measured.primal_objective),
-        "dual": _plain(measured.dual_objective),
-        "gap": _plain(measured.gap),
-        "at_stake": _plain(measured.at_stake),
+        "primal": plain(measured.primal_objective),
+        "dual": plain(measured.dual_objective),
+        "gap": plain(measured.gap),
+        "at_stake": plain(measured.at_stake),
     }
 
 
@@ -107,9 +115,9 @@ def _residual(lp: LinearProgram, verdict: Verdict) -> dict[str, Any]:
     known = verdict.passed is not None
     return {
         "condition": verdict.condition.value,
-        "absolute": _plain(verdict.absolute) if known else None,
-        "scaled": _plain(verdict.scaled) if known else None,
-        "relative": _plain(verdict.relative) if known else None,
+        "absolute": plain(verdict.absolute) if known else None,
+        "scaled": plain(verdict.scaled) if known else None,
+        "relative": plain(verdict.relative) if known else None,
         "tolerance": verdict.tolerance,
         "passed": verdict.passed,
         "worst": _line(lp, verdict.worst),
@@ -181,20 +189,20 @@ def _answer(found: Optimal) -> dict[str, Any]:
         "polished": isinstance(found.origin, Polished),
         "rounded": {
             "digits": rounded.digits,
-            "absolute": _plain(rounded.absolute),
-            "scaled": _plain(rounded.scaled),
+            "absolute": plain(rounded.absolute),
+            "scaled": plain(rounded.scaled),
             "worst": _line(lp, rounded.line),
         },
         "prices_from_basis": {
             "done": isinstance(basis, BasisRoute),
             "reason": None if isinstance(basis, BasisRoute) else basis.reason,
-            "condition": _plain(basis.prices.condition) if isinstance(basis, BasisRoute) else None,
+            "condition": plain(basis.prices.condition) if isinstance(basis, BasisRoute) else None,
             **_difference(lp, basis if isinstance(basis, BasisRoute) else None),
         },
         "prices_from_dual": {
             "done": isinstance(dual, DualSolved),
             "reason": None if isinstance(dual, DualSolved) else dual.reason,
-            "objective": _plain(dual.objective) if isinstance(dual, DualSolved) else None,
+            "objective": plain(dual.objective) if isinstance(dual, DualSolved) else None,
             "objective_agrees": dual.agrees if isinstance(dual, DualSolved) else None,
             **_difference(lp, dual if isinstance(dual, DualSolved) else None),
         },
@@ -206,7 +214,7 @@ def _difference(lp: LinearProgram, route: BasisRoute | DualSolved | None) -> dic
         return {"largest_difference": None, "row": None, "rows_beyond_rounding": None}
     found = route.difference
     return {
-        "largest_difference": _plain(found.largest),
+        "largest_difference": plain(found.largest),
         "row": None if found.row is None else lp.rows[found.row],
         "rows_beyond_rounding": found.beyond,
     }
@@ -218,18 +226,18 @@ def _certificate(found: NoOptimum) -> dict[str, Any]:
         ray = certificate.ray
         return {
             "kind": "plan and ray",
-            "rate": _plain(ray.rate),
-            "violation": _plain(ray.violation),
-            "drift": _plain(ray.drift),
+            "rate": plain(ray.rate),
+            "violation": plain(ray.violation),
+            "drift": plain(ray.drift),
             "plan": _sparse("column", lp.columns, ray.x),
             "ray": _sparse("column", lp.columns, ray.direction),
         }
     farkas = certificate.farkas
     return {
         "kind": "Farkas multipliers",
-        "contradiction": _plain(farkas.contradiction),
-        "misplaced": _plain(farkas.misplaced),
-        "reach": _plain(farkas.reach),
+        "contradiction": plain(farkas.contradiction),
+        "misplaced": plain(farkas.misplaced),
+        "reach": plain(farkas.reach),
         "constraints": _sparse("row", lp.rows, farkas.y),
         "variables": _sparse("column", lp.columns, farkas.z),
     }
@@ -237,7 +245,7 @@ def _certificate(found: NoOptimum) -> dict[str, Any]:
 
 def _sparse(kind: str, names: tuple[str, ...], values: Vector) -> list[dict[str, Any]]:
     return [
-        {kind: names[k], "value": _plain(float(values[k]))} for k in np.flatnonzero(values).tolist()
+        {kind: names[k], "value": plain(float(values[k]))} for k in np.flatnonzero(values).tolist()
     ]
 
 
@@ -268,12 +276,12 @@ def _settings(head: Head) -> dict[str, Any]:
 
 
 def _numbers(values: Vector) -> list[float | str]:
-    plain = values.tolist()
+    numbers = values.tolist()
     if np.isfinite(values).all():
-        return plain  # type: ignore[no-any-return]
-    return [_plain(value) for value in plain]
+        return numbers  # type: ignore[no-any-return]
+    return [plain(value) for value in numbers]
 
 
-def _plain(value: float) -> float | str:
+def plain(value: float) -> float | str:
     """A number, or one of the strings "inf", "-inf" and "nan"."""
     return value if math.isfinite(value) else str(value)

@@ -3,7 +3,8 @@
 from __future__ import annotations
 
 import math
-from collections.abc import Sequence
+from collections.abc import Mapping, Sequence
+from types import MappingProxyType
 
 import numpy as np
 
@@ -11,6 +12,7 @@ from lpview.ledger import Ledger, ledger
 from lpview.marks import Flag
 from lpview.model import LinearProgram
 from lpview.outcomes import Examination, Optimal
+from lpview.prices import LinePrices
 from lpview.report import asking
 from lpview.report.check import CAUTION, report, verdict
 from lpview.report.document import Block, Command, Document, Facts, Sentence, Table
@@ -18,16 +20,25 @@ from lpview.report.ledger_words import meaning
 from lpview.report.names import fitted, safe
 from lpview.report.numbers import count, number, residual
 
+NONE: Mapping[int, LinePrices] = MappingProxyType({})
+"""No prices were worked out."""
 MOST_TERMS = 20
 """Terms shown unless the full ledger is asked for; the others as their sum."""
 
 
-def ledger_report(found: Examination, lines: Sequence[int], full: bool = False) -> Document:
+def ledger_report(
+    found: Examination,
+    lines: Sequence[int],
+    full: bool = False,
+    prices: Mapping[int, LinePrices] = NONE,
+    problem: str = "",
+) -> Document:
     """The ledgers of lines numbered as in `lpview.kkt`, and how to get them again.
 
     ``found.head.request.command`` is the command of the check; the options that name
     the lines are added to it. An examination without an answer has no ledgers, and
-    the usual report says why.
+    the usual report says why. ``prices`` has those of lines where they were worked out,
+    ``problem`` says why some were not.
     """
     found = asking(found, *line_options(found.head.model, lines))
     if not isinstance(found, Optimal):
@@ -35,7 +46,8 @@ def ledger_report(found: Examination, lines: Sequence[int], full: bool = False) 
     head = found.head
     return (
         Sentence(f"{safe(head.request.source)}: {verdict(found)}", strong=True),
-        *(block for line in lines for block in ledger_blocks(found, line, full)),
+        *([Sentence(problem)] if problem else []),
+        *(block for line in lines for block in ledger_blocks(found, line, full, prices.get(line))),
         Command("reproduce", head.request.command),
         Sentence(CAUTION),
     )
@@ -52,13 +64,15 @@ def line_options(lp: LinearProgram, lines: Sequence[int]) -> list[str]:
     return words
 
 
-def ledger_blocks(found: Optimal, line: int, full: bool = False) -> tuple[Block, ...]:
+def ledger_blocks(
+    found: Optimal, line: int, full: bool = False, prices: LinePrices | None = None
+) -> tuple[Block, ...]:
     """The ledger of one line: its terms, what they add up to, what that means."""
     entry = ledger(found, line)
     return (
         _terms(found.head.model, entry, full),
         Facts(_totals(entry)),
-        *map(Sentence, meaning(found, entry)),
+        *map(Sentence, meaning(found, entry, prices)),
     )
 
 

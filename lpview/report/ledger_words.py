@@ -5,6 +5,8 @@ maximizing, and a dual value is the slope of a line that it never crosses. So a 
 of 2 says: one unit looser improves the objective by at most 2, one unit tighter
 worsens it by at least 2 or leaves no plan. That is true of every optimal dual value,
 whether or not it is the only one; for small steps both are exact where it is.
+
+Where the prices were worked out (`lpview.prices`), what they found is said instead.
 """
 
 from __future__ import annotations
@@ -14,11 +16,16 @@ import numpy as np
 from lpview.ledger import Ledger
 from lpview.marks import FAULTS, Flag
 from lpview.outcomes import Optimal
+from lpview.prices import LinePrices
 from lpview.report.numbers import count, number
+from lpview.report.price_words import price_sentences
 
 
-def meaning(found: Optimal, entry: Ledger) -> tuple[str, ...]:
-    """What the ledger of a line says, a sentence or more a line of text."""
+def meaning(found: Optimal, entry: Ledger, prices: LinePrices | None = None) -> tuple[str, ...]:
+    """What the ledger of a line says, a sentence or more a line of text.
+
+    ``prices``, where they were worked out, replace what one price alone can promise.
+    """
     faults = [_FAULT_WORDS[flag] for flag in entry.flags if flag in FAULTS]
     if faults:
         return ("Not as it should be: " + "; ".join(faults) + ".",)
@@ -26,6 +33,10 @@ def meaning(found: Optimal, entry: Ledger) -> tuple[str, ...]:
         return ("The check failed elsewhere, so these numbers are the answer's claim only.",)
     if entry.priced and _is_left_over(entry):
         return ("Within the tolerance only: it has a price at a limit that it does not sit at.",)
+    if prices is not None:
+        place = _row_place(entry) if entry.is_row else f"{_place(entry)}: {_account(entry)}."
+        has_end = np.isfinite(entry.slack) or not entry.is_row
+        return (place, *(price_sentences(found, entry.line, prices) if has_end else ()))
     words = _row(entry) if entry.is_row else _column(entry)
     return (words, _certainty(found)) if entry.priced else (words,)
 
@@ -44,16 +55,26 @@ def _is_left_over(entry: Ledger) -> bool:
 
 
 def _row(entry: Ledger) -> str:
+    place = _row_place(entry)
+    if np.isinf(entry.slack) or (entry.room and not entry.priced):
+        return place
+    if entry.priced:
+        where = f"on its {_end(entry)}" if entry.paired else "on its right-hand side"
+        return f"{place} {_steps(entry, where)}"
+    return f"{place.removesuffix('.')}, without a price of its own. {_without_price(entry)}"
+
+
+def _row_place(entry: Ledger) -> str:
+    """Where a row stands."""
     if np.isinf(entry.slack):
         return "It has no side, so it cannot hold the plan back."
-    if entry.priced:
-        if not entry.paired:
-            return f"It is an equality. {_steps(entry, 'on its right-hand side')}"
-        return f"It holds the plan back. {_steps(entry, f'on its {_end(entry)}')}"
-    if entry.room:
+    if entry.room and not entry.priced:
         return f"It does not hold the plan back: {number(entry.slack)} to spare."
-    what = "It is an equality" if not entry.paired else f"It is used up to its {_nearest(entry)}"
-    return f"{what}, without a price of its own. {_without_price(entry)}"
+    if not entry.paired:
+        return "It is an equality."
+    if entry.priced:
+        return "It holds the plan back."
+    return f"It is used up to its {_nearest(entry)}."
 
 
 def _column(entry: Ledger) -> str:

@@ -14,6 +14,8 @@ from lpview.solver.highs import LIMITS, SMALL_COEFFICIENT, pass_model, quiet_hig
 from lpview.warm import Box, Descent, Index, Lost, Vertex, WarmModel
 
 _PRIMAL_SIMPLEX = 4
+_DUAL_SIMPLEX = 1
+_OTHER_STRATEGIES = (_PRIMAL_SIMPLEX, _DUAL_SIMPLEX)
 _OPTIONS = {
     "presolve": "off",
     "solver": "simplex",
@@ -42,18 +44,33 @@ class _WarmHighs:
 
     def set_columns(self, index: Index, low: Vector, high: Vector) -> None:
         shift = -self._scaling.column[index]
-        self._highs.changeColsBounds(len(index), index, _shifted(low, shift), _shifted(high, shift))
+        low, high = _shifted(low, shift), _shifted(high, shift)
+        _done(self._highs.changeColsBounds(len(index), index, low, high))
 
     def set_rows(self, index: Index, low: Vector, high: Vector) -> None:
         shift = self._scaling.row[index]
-        self._highs.changeRowsBounds(len(index), index, _shifted(low, shift), _shifted(high, shift))
+        low, high = _shifted(low, shift), _shifted(high, shift)
+        _done(self._highs.changeRowsBounds(len(index), index, low, high))
 
     def least(self, index: Index, costs: Vector) -> Vertex | Descent | Lost:
         highs = self._highs
         highs.changeColsCost(len(self._asked), self._asked, np.zeros(len(self._asked)))
         costs = _shifted(costs, self._scaling.column[index])
-        highs.changeColsCost(len(index), index, costs)
+        _done(highs.changeColsCost(len(index), index, costs))
         self._asked = index
+        found = self._run()
+        for strategy in _OTHER_STRATEGIES:
+            if not isinstance(found, Lost):
+                break
+            # Now and then a run from another basis ends without a status: begin anew.
+            highs.clearSolver()
+            highs.setOptionValue("simplex_strategy", strategy)
+            found = self._run()
+        highs.setOptionValue("simplex_strategy", _PRIMAL_SIMPLEX)
+        return found
+
+    def _run(self) -> Vertex | Descent | Lost:
+        highs = self._highs
         highs.run()
         status = highs.getModelStatus()
         if status == highspy.HighsModelStatus.kOptimal:
@@ -66,6 +83,12 @@ class _WarmHighs:
 
     def _point(self) -> Vector:
         return self._scaling.plan(np.array(self._highs.getSolution().col_value))
+
+
+def _done(status: Any) -> None:
+    """A refused change would leave the questions that follow about another model."""
+    if status == highspy.HighsStatus.kError:
+        raise ValueError("expected lines and limits of the open model")
 
 
 def _program(G: csr_array, box: Box) -> LinearProgram:

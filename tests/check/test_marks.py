@@ -10,7 +10,7 @@ from hypothesis import given, settings
 
 from lpview.answer import Basis, LineStatus
 from lpview.kkt import measure
-from lpview.marks import NEED_BASIS, Flag, mark
+from lpview.marks import NEED_BASIS, NEED_PRICES, Flag, mark
 from lpview.solver import solve
 from tests.check.helpers import examined, line_of, name_of
 from tests.check.small_models import MODELS
@@ -96,7 +96,7 @@ def test_the_same_vertex_with_another_basis():
 
 def test_what_needs_a_basis_is_not_known_without_one():
     marks = marked(DEGENERATE, X, Y)
-    assert set(marks.flags) == set(Flag) - set(NEED_BASIS)
+    assert set(marks.flags) == set(Flag) - {*NEED_BASIS, *NEED_PRICES}
     assert set(NEED_BASIS) == {Flag.DEGENERATE, Flag.OTHER_PLAN}
     assert marks.of(line_of(DEGENERATE, "c")) == (Flag.ZERO_SLACK, Flag.BOTH_ZERO)
 
