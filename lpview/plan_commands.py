@@ -14,7 +14,8 @@ from lpview.blocks import write_values
 from lpview.examination import check_answer
 from lpview.model import Vector
 from lpview.outcomes import Optimal
-from lpview.price_commands import WORKING, steps, without_prices
+from lpview.price_about import WORKING, steps
+from lpview.price_commands import without_prices
 from lpview.priced import Interval, StoppedEarlyError
 from lpview.prices import NoPrices, Prices, work_out
 from lpview.progress import watched

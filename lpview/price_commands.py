@@ -10,30 +10,27 @@ from dataclasses import replace
 
 import numpy as np
 
-from lpview import cli, commands
+from lpview import cli, commands, price_about
 from lpview.blocks import InputError, Mistake
 from lpview.blocks.mistakes import quoted
 from lpview.outcomes import Examination, Optimal
 from lpview.priced import (
     Between,
     Priced,
-    StoppedEarlyError,
     price_everything,
     price_lines,
     price_report,
 )
 from lpview.prices import NoPrices, Prices, Then, Together, move_together, work_out
+from lpview.prices.interior import find_interior
 from lpview.progress import watched
 from lpview.report import json, price_json
 from lpview.report import prices as reports
 from lpview.report.check import report, verdict
 from lpview.report.document import Document
 from lpview.report.together import asking_moves, together_report
-from lpview.run import Claim, Watch
+from lpview.run import Watch
 from lpview.solver import warm_model
-
-WORKING = ("examining prices", "step")
-"""What the progress line says."""
 
 
 def prices(options: argparse.Namespace) -> list[int]:
@@ -44,6 +41,8 @@ def prices(options: argparse.Namespace) -> list[int]:
         return [without_prices(found, options)]
     if options.moves:
         return [_moved(found, options, watch)]
+    if options.about:
+        return [price_about.write(found, options, watch, started)]
     found, priced = worked_out(found, options, watch, started)
     text = _rendered(found, priced, options)
     if text:
@@ -88,37 +87,31 @@ def worked_out(
 
     The command's time limit counts from ``started``, a reading of `time.monotonic`.
     """
-    step = steps(watch, options.time_limit, started)
+    step = price_about.steps(watch, options.time_limit, started)
+    ask = price_about.asking(watch, options.time_limit, started)
 
     def work() -> Priced | NoPrices:
         ready = work_out(found, warm_model)
-        return ready if isinstance(ready, NoPrices) else _asked(found, ready, options, step)
+        if isinstance(ready, NoPrices):
+            return ready
+        return _asked(found, ready, options, step, ask)
 
-    result = watched(work, watch, found.head.model.name, WORKING)
+    result = watched(work, watch, found.head.model.name, price_about.WORKING)
     return (result.found if isinstance(result, Priced) else found), result
 
 
-def _asked(found: Optimal, ready: Prices, options: argparse.Namespace, step: Between) -> Priced:
+def _asked(
+    found: Optimal, ready: Prices, options: argparse.Namespace, step: Between, ask: price_about.Ask
+) -> Priced:
     if options.lines:
         lines = commands.lines_asked(found.head.model, "", options.lines)
         return price_lines(found, ready, lines, step)
     if options.format in ("json", "csv"):
         return price_everything(found, ready, step)
-    return price_report(found, ready, None if options.full else reports.MOST_ROWS, step)
-
-
-def steps(watch: Watch, limit: float | None, started: float) -> Between:
-    """What is called between two steps: counts them, and raises when it is time to stop."""
-    watch.iterations = 0
-
-    def step() -> None:
-        watch.iterations += 1
-        if watch.stop.is_set():
-            raise StoppedEarlyError(Claim.INTERRUPTED)
-        if limit is not None and time.monotonic() - started > limit:
-            raise StoppedEarlyError(Claim.TIME_LIMIT)
-
-    return step
+    priced = price_report(found, ready, None if options.full else reports.MOST_ROWS, step)
+    if priced.stopped is not None:
+        return priced
+    return replace(priced, interior=find_interior(found, ask))
 
 
 def _rendered(found: Optimal, priced: Priced | NoPrices, options: argparse.Namespace) -> str:
@@ -152,7 +145,7 @@ def _moved(found: Optimal, options: argparse.Namespace, watch: Watch) -> int:
         ready = work_out(found, warm_model)
         return ready if isinstance(ready, NoPrices) else move_together(ready, moves)
 
-    made = watched(work, watch, lp.name, WORKING)
+    made = watched(work, watch, lp.name, price_about.WORKING)
     known = isinstance(made, Together) and made.then is not Then.NOT_FOUND
     document = (
         reports.no_prices_report(found, made)

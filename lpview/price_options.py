@@ -6,6 +6,14 @@ import argparse
 import math
 from functools import partial
 
+ABOUT = {
+    "interior": "say whether a plan is strictly feasible, which inequalities are equalities in "
+    "truth, and which sets of optima are bounded",
+    "redundant": "look for rows that no feasible plan reaches or that others imply (a solve each)",
+    "digits": "estimate how many digits of the answer to believe",
+}
+"""Reports of ``lpview prices`` on something other than single prices."""
+
 
 def add_line_options(parser: argparse.ArgumentParser, what: str) -> None:
     """``--row NAME`` and ``--column NAME``, each any number of times."""
@@ -27,6 +35,11 @@ def add_prices_options(parser: argparse.ArgumentParser) -> None:
         "--move", dest="moves", action="append", default=[], metavar="ROW=AMOUNT", type=_move,
         help="move several right-hand sides together; once for each row",
     )  # fmt: skip
+    about = parser.add_mutually_exclusive_group()
+    for name, text in ABOUT.items():
+        about.add_argument(
+            f"--{name}", dest="about", action="store_const", const=name, default="", help=text
+        )
     parser.add_argument("--format", choices=("text", "markdown", "csv", "json"), default="text")
     parser.add_argument("--full", action="store_true", help="list every line, however many")
 
@@ -72,10 +85,12 @@ def wrong_use(options: argparse.Namespace) -> str:
         return ""
     if options.command != "prices":
         return ""
-    if options.format in ("csv", "json") and (options.lines or options.moves):
+    if options.about and (options.lines or options.moves):
+        return f"expected --{options.about}, or --row, --column and --move, got both"
+    if options.format in ("csv", "json") and (options.lines or options.moves or options.about):
         return (
-            "--row, --column and --move are printed as text or markdown; "
-            f"{options.format} has every line anyway"
+            "--row, --column, --move, --interior, --redundant and --digits are printed as text "
+            f"or markdown; {options.format} has every line anyway"
         )
     if options.lines and options.moves:
         return "expected --row and --column, or --move, got both"

@@ -14,7 +14,8 @@ import numpy as np
 
 from lpview.marks import Flag, Mask, with_prices
 from lpview.outcomes import Optimal
-from lpview.prices import LinePrices, Prices
+from lpview.prices import LinePrices, NoPrices, Prices
+from lpview.prices.interior import Interior
 from lpview.run import Claim
 
 Interval = tuple[float, float]
@@ -48,6 +49,8 @@ class Priced:
     """Dimension of the set of optimal dual solutions."""
     stopped: Claim | None
     """What ended the work before all lines asked for were examined; None if nothing did."""
+    interior: Interior | NoPrices | None = None
+    """Strictly feasible points and what follows from them; None where not asked for."""
 
     @property
     def not_unique(self) -> Mask:

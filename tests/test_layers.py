@@ -18,7 +18,12 @@ PACKAGE = ROOT / "lpview"
 
 OUTER = (
     *("lpview.__main__", "lpview.cli", "lpview.commands", "lpview.progress"),
-    *("lpview.price_commands", "lpview.price_options", "lpview.plan_commands"),
+    *(
+        "lpview.price_about",
+        "lpview.price_commands",
+        "lpview.price_options",
+        "lpview.plan_commands",
+    ),
     *("lpview.curve_command", "lpview.curve_options"),
 )
 OUTER_PACKAGES = ("lpview.report", "lpview.screen")

@@ -26,8 +26,9 @@ from __future__ import annotations
 from dataclasses import dataclass
 
 import numpy as np
+from numpy.typing import NDArray
 
-from lpview.accurate import Pair, minus, two_product, two_sum, total
+from lpview.accurate import Pair, minus, total, two_product, two_sum
 from lpview.answer import Basis, LineStatus
 from lpview.basis import BasisMatrix, SingularBasis, factor_basis
 from lpview.kkt import FileNumbers
@@ -41,6 +42,9 @@ MOST = 16.0
 
 ROUNDS = 4
 """Refinement steps, of which the first one shows the error and the last one the doubt."""
+
+NOTHING = 1e-25
+"""Errors below this times the largest number beside them are none."""
 
 
 @dataclass(frozen=True)
@@ -171,7 +175,8 @@ def _moved(values: Pair, where: Index, by: Vector, step: Vector) -> Pair:
 
 def _error(reported: Vector, refined: Pair, step: Vector) -> Vector:
     error: Vector = np.abs(minus((reported, np.zeros_like(reported)), refined)[0]) + np.abs(step)
-    return np.where(np.isnan(error), np.inf, error)
+    least = NOTHING * float(np.max(np.abs(refined[0]), initial=0.0))
+    return np.where(np.isnan(error), np.inf, np.where(error <= least, 0.0, error))
 
 
 def _objective(
@@ -194,7 +199,7 @@ def _digits(error: Vector, refined: Pair) -> Vector:
     with np.errstate(divide="ignore", invalid="ignore"):
         count = -np.log10(error / size)
     count = np.where(error == 0.0, MOST, np.where(size == 0.0, 0.0, count))
-    return np.clip(np.where(np.isnan(count), 0.0, count), 0.0, MOST)
+    return np.clip(np.where(np.isnan(count), 0.0, count), 0.0, MOST) + 0.0
 
 
 def _worst(count: Vector, among: Mask) -> int | None:
@@ -210,7 +215,7 @@ def _sizes(coefficients: Vector) -> tuple[float, float]:
     return float(sizes.min()), float(sizes.max())
 
 
-def _spread(coefficients: Vector, starts: Vector, first: int) -> Spread:
+def _spread(coefficients: Vector, starts: NDArray[np.integer], first: int) -> Spread:
     filled = np.flatnonzero(np.diff(starts))
     if not filled.size:
         return Spread(1.0, None)

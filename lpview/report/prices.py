@@ -16,6 +16,7 @@ from lpview.prices import LinePrices, Move, Moves, NoPrices
 from lpview.report import asking
 from lpview.report.check import CAUTION, provenance, shape, verdict
 from lpview.report.document import Block, Command, Document, Facts, Sentence, Table
+from lpview.report.interior import interior_fact
 from lpview.report.ledger import heading, line_options
 from lpview.report.names import fitted, line_name, safe
 from lpview.report.numbers import count, number
@@ -36,7 +37,7 @@ def prices_report(priced: Priced, full: bool = False) -> Document:
         *_stopped(priced),
         *map(Sentence, dimensions(priced)),
         *_tables(priced, full),
-        Facts((("infeasible at once", infeasible_at_once(priced, full)),)),
+        Facts((("infeasible at once", infeasible_at_once(priced, full)), *_around(priced))),
         Facts(provenance(priced.found.head)),
         *closing(priced.found),
     )
@@ -231,7 +232,15 @@ def check_facts(priced: Priced | NoPrices, full: bool = False) -> tuple[tuple[st
         ("prices", "; ".join(filter(None, [problem(priced), not_unique(priced)]))),
         ("widest prices", _widest_words(priced, full)),
         ("infeasible at once", infeasible_at_once(priced, full)),
+        *_around(priced),
     )
+
+
+def _around(priced: Priced) -> tuple[tuple[str, str], ...]:
+    """What stands about the whole model beside its prices."""
+    if priced.interior is None:
+        return ()
+    return (("strictly feasible", interior_fact(priced.found.head.model, priced.interior)),)
 
 
 def _widest_words(priced: Priced, full: bool) -> str:

@@ -279,7 +279,8 @@ def test_a_failed_check_has_no_prices_and_exits_with_one(tmp_path, monkeypatch, 
     ("words", "problem"),
     [
         (("prices", "glass.csv", "--row", "heat", "--format", "csv"),
-         "--row, --column and --move are printed as text or markdown; csv has every line anyway"),
+         "--row, --column, --move, --interior, --redundant and --digits are printed as text or "
+         "markdown; csv has every line anyway"),
         (("prices", "glass.csv", "--row", "heat", "--move", "heat=1"),
          "expected --row and --column, or --move, got both"),
         (("prices", "glass.csv", "--move", "heat=1", "--move", "heat=2"),
@@ -328,8 +329,8 @@ def test_a_time_limit_ends_the_work_with_four(tmp_path, monkeypatch, capfd):
 
 SLOW = """
 import signal, sys, threading, time
-from lpview import cli, price_commands
-inner = price_commands.steps
+from lpview import cli, price_about
+inner = price_about.steps
 def slow(watch, limit, started):
     step = inner(watch, limit, started)
     def waiting():
@@ -340,7 +341,7 @@ def slow(watch, limit, started):
             time.sleep(0.1)
         step()
     return waiting
-price_commands.steps = slow
+price_about.steps = slow
 sys.exit(cli.main(["prices", "glass.csv"]))
 """
 
@@ -359,3 +360,20 @@ def test_ctrl_c_prints_what_is_known(tmp_path):
     assert (running.returncode, err) == (4, "")
     assert "(interrupted)\n" in out
     assert "dual values of 2 of 3 rows and reduced costs of 1 of 2 columns are not unique" in out
+
+
+@pytest.mark.parametrize(
+    ("option", "words"),
+    [
+        ("--interior", "one plan satisfies every inequality with a margin of"),
+        ("--redundant", "sides of inequality rows examined"),
+        ("--digits", "digits of the objective"),
+    ],
+)
+def test_reports_about_the_whole_model(tmp_path, monkeypatch, capfd, option, words):
+    monkeypatch.chdir(tmp_path)
+    written(tmp_path, "glass.csv", GLASSHOUSE)
+    status, out, _ = run("prices", "glass.csv", option, capfd=capfd)
+    assert status == 0
+    assert words in out
+    assert f"reproduce  lpview prices glass.csv {option}\n" in out
