@@ -2,13 +2,15 @@
 
 Both tables share one layout, so that the spine runs straight down the screen: the
 primal side to its left, the price side to its right. As width shrinks, columns go
-in a fixed order; name, one primal number, spine and price always stay.
+in a fixed order; name, one primal number, spine and price always stay. The table that
+shows how its lines are linked to the other one has that coefficient in place of the
+rates where there is not room for both.
 """
 
 from __future__ import annotations
 
 from collections.abc import Callable
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 import numpy as np
 from numpy.typing import NDArray
@@ -16,14 +18,18 @@ from numpy.typing import NDArray
 from lpview.kkt import Side
 from lpview.model import Vector
 from lpview.outcomes import Optimal
+from lpview.report.names import safe, width
 from lpview.report.numbers import fitted_number, number
+from lpview.screen.price_book import DOWN, DOWN_FAR, UP, UP_FAR, PriceBook
 
 NUMBER = 12
 """Cells of a number; the widest one at six digits, ``-1.23457e-10``, fits."""
+RATE = 9
+"""Cells of a rate; ``-0.468022`` fits."""
 SIDES = 24
 """Cells of a pair of sides."""
-NARROWEST_NAME, WIDEST_NAME = 18, 60
-"""Cells that names get at least and at most."""
+NARROWEST_NAME, ENOUGH_NAME, WIDEST_NAME = 18, 30, 60
+"""Cells that names get at least, before columns that matter less, and at most."""
 GAP = 2
 """Cells between columns."""
 
@@ -40,6 +46,8 @@ class Column:
     """What it shows for a line of its table."""
     keys: Vector | None
     """What it sorts by; None where it cannot be sorted by."""
+    mark: Callable[[int], str] = lambda _: ""
+    """A mark of one cell after it, in the gap, or nothing."""
 
 
 @dataclass(frozen=True)
@@ -64,26 +72,62 @@ class Layout:
     """Columns left of the spine."""
     prices: int
     """Columns right of the spine, before the link column."""
+    is_link_apart: bool
+    """Whether the link column has room of its own; else it takes that of the rates."""
 
 
-def layout(width: int, cursor: int, spine: int, most: Layout) -> Layout:
+_STEPS = (
+    # What there is then: left of the spine, right of it, room for the link; further cells.
+    (1, 3, False, 2 * (GAP + RATE) - (GAP + NUMBER), NARROWEST_NAME),
+    (2, 3, False, GAP + NUMBER, NARROWEST_NAME),
+    (3, 3, False, GAP + SIDES, NARROWEST_NAME),
+    (3, 3, True, GAP + NUMBER, ENOUGH_NAME),
+    (3, 4, True, GAP + len("complementarity"), ENOUGH_NAME),
+    (3, 6, True, 2 * (GAP + NUMBER), ENOUGH_NAME),
+)
+"""Rates, row value, sides, link, complementarity, distances: as they appear with width, each
+with the cells that it takes and those that it leaves for names."""
+
+
+def layout(width: int, cursor: int, spine: int, longest: int) -> Layout:
     """Fit columns into ``width`` cells, the more important ones first.
 
-    ``most`` says how many there are on each side, and the longest name.
+    ``longest`` is the width of the longest name.
     """
     left = width - cursor - spine - 3 * (GAP + NUMBER) - GAP
-    chosen = {"primal": 1, "prices": 1}
-    # In this order they appear: row value, sides, complementarity.
-    for side, cells in (("primal", NUMBER), ("primal", SIDES), ("prices", NUMBER + 3)):
-        spare = left - cells - GAP
-        enough = NARROWEST_NAME if side == "primal" else min(most.name, 30)
-        if chosen[side] < getattr(most, side) and spare >= max(NARROWEST_NAME, enough):
-            chosen[side] += 1
-            left = spare
-    return Layout(max(min(left, WIDEST_NAME, max(most.name, NARROWEST_NAME)), 1), **chosen)
+    primal, prices, is_apart = 1, 1, True
+    for *chosen, cells, enough in _STEPS:
+        if left - cells < max(NARROWEST_NAME, min(longest, enough)):
+            break
+        primal, prices, is_apart = chosen[0], chosen[1], bool(chosen[2])
+        left -= cells
+    name = max(min(left, WIDEST_NAME, max(longest, NARROWEST_NAME)), 1)
+    return Layout(name, primal, prices, is_apart)
 
 
-def constraint_columns(found: Optimal) -> TableColumns:
+def squeezed(name: str, cells: int, more: str) -> str:
+    """A safe name in at most so many cells, cut in its middle: both its ends tell it apart."""
+    name = safe(name)
+    if width(name) <= cells:
+        return name
+    head = (cells - width(more) + 1) // 2
+    tail = _begin(name[::-1], cells - width(more) - head)[::-1]
+    while tail and not width(tail[0]):  # a combining mark whose letter was cut off
+        tail = tail[1:]
+    return _begin(name, head) + more + tail
+
+
+def _begin(text: str, cells: int) -> str:
+    """As many characters as fit."""
+    used = 0
+    for place, character in enumerate(text):
+        used += width(character)
+        if used > cells:
+            return text[:place]
+    return text
+
+
+def constraint_columns(found: Optimal, book: PriceBook) -> TableColumns:
     """Columns of the constraints."""
     lp, side = found.head.model, found.measurement.rows
     return TableColumns(
@@ -93,11 +137,11 @@ def constraint_columns(found: Optimal) -> TableColumns:
             _numbers("row value", side.value),
             _pair("sides", lp.row_lower, lp.row_upper, lp.is_equality),
         ),
-        (_numbers("dual value", side.price), _complementarity(side)),
+        _price_side("dual value", side, book, 0),
     )
 
 
-def variable_columns(found: Optimal) -> TableColumns:
+def variable_columns(found: Optimal, book: PriceBook) -> TableColumns:
     """Columns of the variables."""
     lp, side = found.head.model, found.measurement.columns
     return TableColumns(
@@ -107,7 +151,25 @@ def variable_columns(found: Optimal) -> TableColumns:
             _numbers("distance", side.slack),
             _pair("bounds", lp.lower, lp.upper, lp.is_fixed),
         ),
-        (_numbers("reduced cost", side.price), _complementarity(side)),
+        _price_side("reduced cost", side, book, lp.m),
+    )
+
+
+def _price_side(title: str, side: Side, book: PriceBook, first: int) -> tuple[Column, ...]:
+    """Price, rates, complementarity, distances; ``first`` is the number of the first line."""
+
+    def moved(title: str, what: int, cells: int) -> Column:
+        keys = book.numbers[what, first : first + side.price.size]
+        return Column(title, cells, lambda line: book.cell(what, first + line, cells), keys)
+
+    price = _numbers(title, side.price)
+    return (
+        replace(price, mark=lambda line: book.mark(first + line)),
+        moved("up", UP, RATE),
+        moved("down", DOWN, RATE),
+        _complementarity(side),
+        moved("how far up", UP_FAR, NUMBER),
+        moved("how far down", DOWN_FAR, NUMBER),
     )
 
 

@@ -2,15 +2,18 @@
 
 from __future__ import annotations
 
+from collections.abc import Callable
+
 import numpy as np
 from textual import events
 from textual.widgets import Input, Static
 
-from lpview.marks import Flag
+from lpview.marks import NEED_PRICES, Flag
 from lpview.report.numbers import count
 from lpview.screen.key_line import KeyLine
 from lpview.screen.keys import FOOTER, PROMPT
 from lpview.screen.linked import LinkedScreen
+from lpview.screen.price_book import State
 
 
 class FindingScreen(LinkedScreen):
@@ -26,13 +29,14 @@ class FindingScreen(LinkedScreen):
 
     def action_search(self) -> None:
         """Ask for words; the table follows while they are typed."""
-        self._ask("search", "words of a name", self.leading.view.search)
+        self.ask("search", "words of a name", self.leading.view.search)
 
     def action_go_to(self) -> None:
         """Ask for a line number."""
-        self._ask("go to", "number of a line", "")
+        self.ask("go to", "number of a line", "")
 
-    def _ask(self, purpose: str, hint: str, value: str) -> None:
+    def ask(self, purpose: str, hint: str, value: str) -> None:
+        """Open the prompt; `take_answer` gets what was typed."""
         self._prompt_for = purpose
         prompt = self.query_one("#prompt", Input)
         prompt.placeholder = f"{purpose}: {hint}; Enter keeps it, Escape leaves"
@@ -62,11 +66,15 @@ class FindingScreen(LinkedScreen):
             elif event.key == "escape":
                 self.action_leave()
             return True
-        asks = {"slash": self.action_search, "g": self.action_go_to}
-        if event.key in asks:
-            asks[event.key]()
-            return True
-        return False
+        asks = self.prompts.get(event.key)
+        if asks:
+            asks()
+        return asks is not None
+
+    @property
+    def prompts(self) -> dict[str, Callable[[], None]]:
+        """Keys that open a prompt, with what opens it."""
+        return {"slash": self.action_search, "g": self.action_go_to}
 
     def _close_prompt(self) -> None:
         self.query_one("#prompt", Input).display = False
@@ -86,9 +94,13 @@ class FindingScreen(LinkedScreen):
             self.follow_selection(table)
 
     def on_input_submitted(self, event: Input.Submitted) -> None:
-        """Keep the search, or go to the line."""
+        """Take the answer for what was asked."""
         purpose, text = self._prompt_for, event.value
         self._close_prompt()
+        self.take_answer(purpose, text)
+
+    def take_answer(self, purpose: str, text: str) -> None:
+        """Keep the search, or go to the line."""
         if purpose == "search":
             view = self.leading.view
             found = count(view.order.size, "line")
@@ -107,9 +119,9 @@ class FindingScreen(LinkedScreen):
     def action_filter(self, name: str) -> None:
         """Show only lines of the leading table that carry a flag; none shows all."""
         table = self.leading
-        mask = self.found.marks.flags.get(Flag[name]) if name else None
+        mask = self.marks.flags.get(Flag[name]) if name else None
         if name and mask is None:
-            self.say(f"{Flag[name].value}: not known without a basis")
+            self.say(f"{Flag[name].value}: {self._why_unknown(Flag[name])}")
             return
         table.fold(False)
         if mask is None:
@@ -125,6 +137,11 @@ class FindingScreen(LinkedScreen):
         table.to_selected()
         self.follow_selection(table)
         self.say(count(table.view.order.size, "line") if name else "")
+
+    def _why_unknown(self, flag: Flag) -> str:
+        if flag in NEED_PRICES and self.book.state is not State.NONE:
+            return "not known yet"
+        return self.book.reason if flag in NEED_PRICES else "not known without a basis"
 
     def action_sort(self) -> None:
         """By the next column."""

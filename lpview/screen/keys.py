@@ -6,7 +6,7 @@ from dataclasses import dataclass
 
 from textual.binding import Binding, BindingType
 
-from lpview.marks import Flag
+from lpview.marks import NEED_PRICES, Flag
 
 
 @dataclass(frozen=True)
@@ -25,10 +25,10 @@ class Key:
     """Short words for the footer; empty where it is not shown there."""
 
 
-FILTER_FLAGS = tuple(Flag)
-"""Flags in the order of their number keys, from 1 on."""
+FILTER_FLAGS = (*(flag for flag in Flag if flag not in NEED_PRICES), *NEED_PRICES)
+"""Flags in the order of their number keys, from 1 on; those known last come last."""
 
-MOVE, FIND, SHOW, TAKE = "Moving", "Finding", "Showing", "Taking away"
+MOVE, FIND, SHOW, PRICES, TAKE = "Moving", "Finding", "Showing", "Prices", "Taking away"
 
 KEYS = (
     Key("tab", "next_pane", "next pane: constraints, variables, ledger", MOVE, "Pane"),
@@ -52,6 +52,9 @@ KEYS = (
     Key("c", "check", "the whole residual check, its worst lines as links", SHOW, "Check"),
     Key("p", "picture", "picture of the sparsity pattern", SHOW, "Picture"),
     Key("d", "turn", "turn the mirror: the dual program as the model, and back", SHOW, "Dual"),
+    Key("v", "curve", "value curve of this line's side, bound or cost", PRICES, "Curve"),
+    Key("plus", "together", "what several rows are worth, moved together", PRICES),
+    Key("x", "pause_prices", "stop examining prices, or go on", PRICES),
     Key("question_mark,f1", "help", "all keys on one page", SHOW, "Keys"),
     Key("t", "ticket('text')", "save the check as text, and copy it", TAKE, "Ticket"),
     Key("m", "ticket('markdown')", "save the check as Markdown, and copy it", TAKE),
@@ -95,7 +98,8 @@ def spelled(key: str) -> str:
 
 
 def groups() -> list[tuple[str, list[tuple[str, str]]]]:
-    """Every key and its words by heading, those of the picture last."""
+    """Every key and its words by heading, those of the picture and the value curve last."""
+    from lpview.screen.curve_screen import KEYS as CURVE_KEYS
     from lpview.screen.picture_screen import KEYS as PICTURE_KEYS
 
     headings = dict.fromkeys(key.group for key in KEYS)
@@ -103,7 +107,10 @@ def groups() -> list[tuple[str, list[tuple[str, str]]]]:
         (heading, [(spelled(key.key), key.words) for key in KEYS if key.group == heading])
         for heading in headings
     ]
-    return [*found, ("In the picture", [(spelled(key), words) for key, _, words in PICTURE_KEYS])]
+    pages = (("In the picture", PICTURE_KEYS), ("On a value curve", CURVE_KEYS))
+    return found + [
+        (heading, [(spelled(key), words) for key, _, words in keys]) for heading, keys in pages
+    ]
 
 
 def table() -> str:

@@ -15,6 +15,7 @@ from lpview.report.names import fitted, width
 from lpview.report.numbers import fitted_number
 from lpview.screen.columns import NUMBER
 from lpview.screen.pane import CURSOR, HEADING, PLAIN, LinesPane, Runs
+from lpview.screen.price_book import PriceBook
 from lpview.screen.spine import Glyphs
 from lpview.screen.view import Lines
 
@@ -22,9 +23,11 @@ from lpview.screen.view import Lines
 class LedgerPane(LinesPane):
     """Terms first, the largest on top, then totals and sentences; terms are links."""
 
-    def __init__(self, found: Optimal, glyphs: Glyphs, **options: str | None) -> None:
+    def __init__(
+        self, found: Optimal, glyphs: Glyphs, book: PriceBook, **options: str | None
+    ) -> None:
         super().__init__(**options)
-        self.found, self.glyphs = found, glyphs
+        self.found, self.glyphs, self.book = found, glyphs, book
         self.entry: Ledger | None = None
         self._totals: list[str] = []
 
@@ -37,7 +40,7 @@ class LedgerPane(LinesPane):
 
     def _wrap(self) -> None:
         """Break totals and sentences at the pane's width."""
-        sentences = [] if self.entry is None else _closing(self.found, self.entry)
+        sentences = [] if self.entry is None else self._sentences(self.entry)
         cells = max(self.size.width - 4, 20)
         self._totals = [part for text in sentences for part in wrap(text, cells)]
 
@@ -45,6 +48,14 @@ class LedgerPane(LinesPane):
         """Sentences break anew."""
         self._wrap()
         super().on_resize()
+
+    def show_prices(self) -> None:
+        """Show what has been found about the line meanwhile; the cursor keeps its term."""
+        before = len(self._totals)
+        self._wrap()
+        if self.cursor >= before:
+            self.cursor += len(self._totals) - before
+        self.show_cursor()
 
     @property
     def term_count(self) -> int:
@@ -101,19 +112,23 @@ class LedgerPane(LinesPane):
         body = f"{numbers[0]:>{NUMBER}} x {numbers[1]:<{NUMBER}}{shown:>{NUMBER + 5}}"
         return "  " + name + " " * max(cells - width(name), 0) + body
 
+    def _sentences(self, entry: Ledger) -> list[str]:
+        """What the terms leave, in numbers and in words."""
+        missing = self.book.missing(entry.line)
+        sentences = meaning(self.found, entry, self.book.line(entry.line))
+        return [_numbers(entry), *sentences, *([missing] if missing else [])]
 
-def _closing(found: Optimal, entry: Ledger) -> list[str]:
-    """What the terms leave, in numbers and in words."""
+
+def _numbers(entry: Ledger) -> str:
+    """What the terms leave, in a line."""
     number = fitted_number
     if entry.is_row:
-        line = (
+        return (
             f"row value {number(entry.value, NUMBER)}, slack {number(entry.slack, NUMBER)}, "
             f"dual value {number(entry.price, NUMBER)}, "
             f"product {number(entry.complementarity, NUMBER)}"
         )
-    else:
-        line = (
-            f"value {number(entry.value, NUMBER)}, cost {number(entry.cost, NUMBER)} "
-            f"less {number(entry.used, NUMBER)} = reduced cost {number(entry.price, NUMBER)}"
-        )
-    return [line, *meaning(found, entry)]
+    return (
+        f"value {number(entry.value, NUMBER)}, cost {number(entry.cost, NUMBER)} "
+        f"less {number(entry.used, NUMBER)} = reduced cost {number(entry.price, NUMBER)}"
+    )

@@ -26,6 +26,7 @@ from lpview.screen.key_line import KeyLine
 from lpview.screen.keys import FOOTER, bindings
 from lpview.screen.ledger_pane import LedgerPane
 from lpview.screen.pane import LinesPane
+from lpview.screen.price_book import PriceBook
 from lpview.screen.spine import ASCII, ROUND
 from lpview.screen.strip import VerdictStrip
 from lpview.screen.table import Link, MirrorTable
@@ -51,14 +52,16 @@ class LinkedScreen(Screen[int | None]):
         glyphs = ASCII if ascii_marks else ROUND
         lp = found.head.model
         rows, columns = summarize(found, Kind.ROW), summarize(found, Kind.COLUMN)
-        self.strip = VerdictStrip(found, glyphs)
-        self.constraints = MirrorTable(
-            found, constraint_columns(found), 0, lp.rows, rows, glyphs, id="constraints"
-        )
+        self.book = PriceBook(found)
+        self.marks = found.marks
+        """The flags of all lines, with those of the prices once they are known."""
+        self.strip = VerdictStrip(found, glyphs, self.book)
+        left, right = constraint_columns(found, self.book), variable_columns(found, self.book)
+        self.constraints = MirrorTable(found, left, 0, lp.rows, rows, glyphs, id="constraints")
         self.variables = MirrorTable(
-            found, variable_columns(found), lp.m, lp.columns, columns, glyphs, id="variables"
+            found, right, lp.m, lp.columns, columns, glyphs, id="variables"
         )
-        self.ledger = LedgerPane(found, glyphs, id="ledger")
+        self.ledger = LedgerPane(found, glyphs, self.book, id="ledger")
         self.leading = self.constraints if lp.m else self.variables
         self.only_linked = True
         self.history = History()
@@ -228,8 +231,8 @@ class LinkedScreen(Screen[int | None]):
     def _to_flagged(self, step: int) -> None:
         table = self.leading
         table.fold(False)
-        flags = self.found.marks.flags
-        any_flag = np.zeros(self.found.marks.room.size, dtype=bool)
+        flags = self.marks.flags
+        any_flag = np.zeros(self.marks.room.size, dtype=bool)
         for flag, mask in flags.items():
             any_flag |= mask if flag is not Flag.ZERO_SLACK else False
         hits = np.flatnonzero(any_flag[table.first_line + table.view.order])
@@ -239,7 +242,7 @@ class LinkedScreen(Screen[int | None]):
             self.say("no further flagged line in this table")
             return
         table.move_to(int(ahead[0]))
-        words = self.found.marks.of(self.line)
+        words = self.marks.of(self.line)
         self.say(", ".join(flag.value for flag in words))
 
     def clear_limits(self, table: MirrorTable) -> None:

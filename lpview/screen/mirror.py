@@ -7,15 +7,15 @@ from textual.message import Message
 from textual.worker import get_current_worker
 
 from lpview.screen import ticket
-from lpview.screen.finding import FindingScreen
 from lpview.screen.outcome import PageScreen, help_text
+from lpview.screen.priced_screen import PricedScreen
 
 TURNING = "turning the mirror; Escape gives up"
 """Said while the dual is rebuilt and checked."""
 
 
-class MirrorScreen(FindingScreen):
-    """Linked panes, finding in them, pages over them, tickets from them."""
+class MirrorScreen(PricedScreen):
+    """Linked panes, finding in them, prices found meanwhile, pages over them, tickets from them."""
 
     _turning = False
 
@@ -49,10 +49,11 @@ class MirrorScreen(FindingScreen):
             self.say(TURNING)
             return
         self._turning = True
+        self.rest_prices()
         self.say(TURNING)
         self._turn_aside(self.line)
 
-    @work(thread=True, exclusive=True)
+    @work(thread=True, exclusive=True, group="turning")
     def _turn_aside(self, line: int) -> None:
         from lpview import turned
         from lpview.cli import told
@@ -80,12 +81,15 @@ class MirrorScreen(FindingScreen):
             self.say(message.problem)
             if message.page:
                 self.app.push_screen(message.page, self._go_to_result)
+            else:
+                self.examine_prices()
 
     def action_leave(self) -> None:
         """Give up turning; else what it does in the linked panes."""
         if self._turning and not self.is_asking:
             self._turning = False
-            self.workers.cancel_node(self)
+            self.workers.cancel_group(self, "turning")
+            self.examine_prices()
             self.say("the mirror was not turned")
             return
         super().action_leave()
@@ -99,7 +103,8 @@ class MirrorScreen(FindingScreen):
         if self.line < 0:
             self.say("there is no line to copy")
         else:
-            self.say(ticket.take_ledger(self.app, self.found, self.line))
+            prices = self.book.line(self.line)
+            self.say(ticket.take_ledger(self.app, self.found, self.line, prices))
 
     async def action_quit(self) -> None:
         """Leave the program."""

@@ -99,7 +99,11 @@ def help_text() -> str:
 MARKS = """Marks of the spine
   left filled: slack beyond the zero tolerance; right filled: a price beyond it
   none filled: both zero; = an equality row or fixed column, which has no such pair
-  ! left: a violated side; ! right: a price of the wrong sign; a cross: product not zero"""
+  ! left: a violated side; ! right: a price of the wrong sign; a cross: product not zero
+Marks of prices
+  * after a price: it is not unique; a dot: not examined yet
+  up, down: change of the objective per unit more, if the side or bound moves that way;
+  no plan: the smallest such move leaves none"""
 
 
 def screen_for(found: Examination, ascii_marks: bool) -> Screen[None] | Screen[int | None]:

@@ -1,4 +1,4 @@
-"""The verdict strip: status, objective, one gauge per condition, and counts."""
+"""The verdict strip: status, objective, one gauge per condition, counts, and progress."""
 
 from __future__ import annotations
 
@@ -16,6 +16,7 @@ from lpview.outcomes import Optimal
 from lpview.report.names import fitted, safe, width
 from lpview.report.numbers import number
 from lpview.screen.pane import FAULT, HEADING, PLAIN, Runs
+from lpview.screen.price_book import PriceBook
 from lpview.screen.spine import Glyphs
 from lpview.verdict import Verdict
 
@@ -42,11 +43,16 @@ SHORTEST_NAME = 16
 """Cells that the model's name keeps before the objective loses digits."""
 
 
-def strip_lines(found: Optimal, cells: int, glyphs: Glyphs) -> list[Runs]:
-    """The strip at a width, line by line."""
+def strip_lines(found: Optimal, cells: int, glyphs: Glyphs, progress: str) -> list[Runs]:
+    """The strip at a width, line by line; ``progress`` is that of the prices."""
     judged = {verdict.condition: verdict for verdict in found.verdicts}
-    rest = [[judged[condition] for condition in line] for line in LINES[1:]]
-    return [_first(found, cells, glyphs), *(_gauges(line, cells, glyphs) for line in rest)]
+    middle, last = ([judged[condition] for condition in line] for line in LINES[1:])
+    room = cells - len(progress) - 2
+    return [
+        _first(found, cells, glyphs),
+        _gauges(middle, cells, glyphs),
+        [*_gauges(last, room, glyphs), (progress, PLAIN)],
+    ]
 
 
 def _first(found: Optimal, cells: int, glyphs: Glyphs) -> Runs:
@@ -103,12 +109,12 @@ class VerdictStrip(Widget):
 
     DEFAULT_CSS = "VerdictStrip { height: 3; }"
 
-    def __init__(self, found: Optimal, glyphs: Glyphs) -> None:
+    def __init__(self, found: Optimal, glyphs: Glyphs, book: PriceBook) -> None:
         super().__init__(id="strip")
-        self.found, self.glyphs = found, glyphs
+        self.found, self.glyphs, self.book = found, glyphs, book
 
     def render_line(self, y: int) -> Strip:
         """One line of the strip."""
-        lines = strip_lines(self.found, self.size.width, self.glyphs)
+        lines = strip_lines(self.found, self.size.width, self.glyphs, self.book.progress())
         segments = [Segment(text, style) for text, style in lines[y]] if y < len(lines) else []
         return Strip(segments).adjust_cell_length(self.size.width, self.rich_style)

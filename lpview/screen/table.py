@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable, Sequence
+from collections.abc import Callable, Iterable, Sequence
 from dataclasses import dataclass, field
 
 import numpy as np
@@ -14,7 +14,7 @@ from lpview.model import Vector
 from lpview.outcomes import Optimal
 from lpview.report.names import fitted, width
 from lpview.report.numbers import fitted_number
-from lpview.screen.columns import GAP, NUMBER, Column, Layout, TableColumns, layout
+from lpview.screen.columns import GAP, NUMBER, Column, Layout, TableColumns, layout, squeezed
 from lpview.screen.pane import (
     CURSOR,
     CURSOR_AWAY,
@@ -187,8 +187,7 @@ class MirrorTable(LinesPane):
     def shared_layout(self, width_: int) -> Layout:
         """The layout that both tables use, so that the spine runs straight down."""
         if self._fit is None or self._fit[0] != width_:
-            most = Layout(self.longest, len(self.columns.primal), len(self.columns.prices))
-            self._fit = width_, layout(width_, CURSOR_CELLS, WIDTH, most)
+            self._fit = width_, layout(width_, CURSOR_CELLS, WIDTH, self.longest)
         return self._fit[1]
 
     def share_layout_with(self, other: MirrorTable) -> None:
@@ -203,10 +202,22 @@ class MirrorTable(LinesPane):
             texts = ("lines", "zero slack", "degenerate", self._largest, self._worth)
             return [(self._family_line("family", texts, width_, " "), QUIET)]
         left = [_right(c.title, c.cells) for c in reversed(self.columns.primal[: fit.primal])]
-        right = [_right(c.title, c.cells) for c in self.columns.prices[: fit.prices]]
-        right.append(_right(fitted(self.link.title, NUMBER, self.glyphs.more), NUMBER))
-        cells = ["  " + _left("name", fit.name), *left, " " * WIDTH, *right]
+        link = fitted(self.link.title, NUMBER, self.glyphs.more)
+        right = self._right_side(fit, lambda column: column.title, lambda _: "", link)
+        cells = ["  " + _left("name", fit.name), *left, " " * WIDTH, right]
         return [(space.join(cells), QUIET)]
+
+    def _right_side(
+        self, fit: Layout, text: Callable[[Column], str], mark: Callable[[Column], str], link: str
+    ) -> str:
+        """The price side of a line or of the heads, each cell with the gap behind it."""
+        columns = self.columns.prices[: fit.prices]
+        if self.link.title and not fit.is_link_apart:
+            columns = columns[:1]
+        cells = [
+            _right(text(column), column.cells) + _left(mark(column), GAP) for column in columns
+        ]
+        return "".join(cells) + _right(link, NUMBER)
 
     def content(self, index: int, width_: int) -> Runs:
         """One line or family."""
@@ -230,12 +241,19 @@ class MirrorTable(LinesPane):
     def _line(self, line: int, width_: int, mark: str) -> str:
         fit = self.shared_layout(width_)
         left = [_right(c.text(line), c.cells) for c in reversed(self.columns.primal[: fit.primal])]
-        right = [_right(c.text(line), c.cells) for c in self.columns.prices[: fit.prices]]
         shared = self.link.coefficient(line)
-        right.append(_right("" if shared is None else fitted_number(shared, NUMBER), NUMBER))
+        link = "" if shared is None else fitted_number(shared, NUMBER)
+        right = self._right_side(fit, lambda c: c.text(line), lambda c: c.mark(line), link)
         marks = spine(self.found.marks, self.first_line + line, self.glyphs)
-        name = _left(fitted(self.view.names[line], fit.name, self.glyphs.more), fit.name)
-        return (" " * GAP).join([mark + " " + name, *left, marks, *right])
+        name = _left(squeezed(self.view.names[line], fit.name, self.glyphs.more), fit.name)
+        return (" " * GAP).join([mark + " " + name, *left, marks, right])
+
+    def shows(self, lines: Iterable[int]) -> bool:
+        """Whether any of these lines, numbered as in `lpview.kkt`, is in sight."""
+        if self.folded:
+            return False
+        seen = self.view.order[self.top : self.top + self.visible_lines] + self.first_line
+        return not set(seen.tolist()).isdisjoint(lines)
 
     def _family(self, index: int, width_: int, mark: str, style: Style) -> Runs:
         summary = self.families

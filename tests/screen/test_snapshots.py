@@ -16,22 +16,30 @@ from lpview.examination import examine
 from lpview.outcomes import Request
 from lpview.screen.app import LpviewApp, Work
 from lpview.screen.key_line import KeyLine
+from lpview.screen.mirror import MirrorScreen
 from lpview.solver import solve
-from tests.screen.models import chain
+from tests.screen.models import blocks, chain
+from tests.screen.waiting import until, until_priced
 
 MODEL = chain(["heat", "bench", "water"], ["tomato", "basil", "chard"])
+DEGENERATE = blocks(
+    [("x", 2), ("y", 1)],
+    [("most", "x", 1), ("both", "x", 1), ("both", "y", 1), ("rest", "y", 1)],
+    [("most", "<=", 4), ("both", "<=", 4), ("rest", "<=", 8)],
+)
+"""x is 4; the dual value of "both" is any number from 1 to 2, of "most" what is left of 2."""
 FOLDER = Path(__file__).parent / "snapshots"
 
 
-def screen_text(size: tuple[int, int], ascii_marks: bool, keys: list[str]) -> str:
+def screen_text(model: str, size: tuple[int, int], ascii_marks: bool, keys: list[str]) -> str:
     request = Request("glasshouse.csv", "lpview check glasshouse.csv")
-    found = examine(read_model_bytes(MODEL.encode(), "glasshouse.csv"), request, solve)
+    found = examine(read_model_bytes(model.encode(), "glasshouse.csv"), request, solve)
 
     async def go() -> str:
         app = LpviewApp(Work("glasshouse.csv", lambda watch, say: found), ascii_marks)
         async with app.run_test(size=size) as pilot:
-            await app.workers.wait_for_complete()
-            await pilot.pause()
+            await until(pilot, lambda: isinstance(app.screen, MirrorScreen))
+            await until_priced(pilot)
             await pilot.press(*keys)
             await pilot.pause()
             screen = app.screen
@@ -44,16 +52,18 @@ def screen_text(size: tuple[int, int], ascii_marks: bool, keys: list[str]) -> st
 
 
 @pytest.mark.parametrize(
-    ("name", "size", "ascii_marks", "keys"),
+    ("name", "model", "size", "ascii_marks", "keys"),
     [
-        ("opened", (80, 24), False, []),
-        ("plain", (120, 40), True, ["down", "down"]),
-        ("followed", (80, 24), False, ["enter"]),
-        ("filtered", (80, 24), True, ["1"]),
+        ("opened", MODEL, (80, 24), False, []),
+        ("plain", MODEL, (120, 40), True, ["down", "down"]),
+        ("followed", MODEL, (80, 24), False, ["enter"]),
+        ("filtered", MODEL, (80, 24), True, ["1"]),
+        ("not-unique", DEGENERATE, (80, 24), True, ["8", "down"]),
+        ("widest", DEGENERATE, (200, 30), False, []),
     ],
 )
-def test_screens_are_as_they_were(name, size, ascii_marks, keys):
-    text = screen_text(size, ascii_marks, keys)
+def test_screens_are_as_they_were(name, model, size, ascii_marks, keys):
+    text = screen_text(model, size, ascii_marks, keys)
     path = FOLDER / f"{name}.txt"
     if os.environ.get("LPVIEW_SNAPSHOTS") == "write":
         path.parent.mkdir(exist_ok=True)
