@@ -54,7 +54,8 @@ class Ends:
     known: Mask
     """Where ``end`` is final, shape ``(2, m + n)``."""
     lost: Mask
-    """Lines whose end could not be found, shape ``(m + n,)``."""
+    """Lines of which an end could not be found, shape ``(m + n,)``; theirs are the farthest
+    entries seen."""
     witness: dict[tuple[int, int], Witness] = field(default_factory=dict)
     """Points that attain an end other than the known point, by end and line."""
 
@@ -91,8 +92,14 @@ class Face:
             np.stack([~moves, ~moves]),
             np.zeros(base.size, bool),
         )
+        pieces = shape.parts()
+        for piece in pieces:
+            if piece.free.size == 1:
+                self._walk(piece)
         self.parts = [
-            _Part(self, Polyhedron(part, base, self.low, self.high, warm)) for part in shape.parts()
+            _Part(self, Polyhedron(piece, base, self.low, self.high, warm))
+            for piece in pieces
+            if piece.free.size > 1
         ]
         self._part_of = {int(k): part for part in self.parts for k in part.lines}
 

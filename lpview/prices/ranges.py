@@ -101,6 +101,8 @@ class Ranges:
             rate = _cleared(
                 self._prices.interval(line)[GREATEST if up else LEAST], lines.price_size[line]
             )
+        if self._prices.ends.lost[line]:
+            return Move(rate, 0.0, Then.NOT_FOUND)
         if math.isinf(rate):
             return Move(rate, 0.0, Then.INFEASIBLE)
         tightens = up != is_high
@@ -181,6 +183,8 @@ class Ranges:
         lines = self._lines
         low, high = float(lines.low[line]), float(lines.high[line])
         rate = self._plans.interval(line)[LEAST if up else GREATEST]
+        if self._plans.ends.lost[line]:
+            return Move(rate, 0.0, Then.NOT_FOUND)
         if math.isinf(rate):
             return Move(rate, 0.0, Then.UNBOUNDED)
         if lines.equal[line]:

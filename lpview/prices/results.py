@@ -80,6 +80,11 @@ class LinePrices:
     """Zero slack to the lower side or bound; None where there is none or the ends meet."""
     upper_zero: ZeroSlack | None
     """Zero slack to the upper side or bound."""
+    price_found: bool = True
+    """Whether both ends of the price interval were found; else the solver gave no usable
+    answer, and they are the farthest prices seen."""
+    value_found: bool = True
+    """The same for the values."""
 
     @property
     def is_unique(self) -> bool:

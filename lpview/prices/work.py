@@ -160,6 +160,8 @@ class Prices:
             cost=self._cost(line) if line >= self.lines.m else None,
             lower_zero=zero[0],
             upper_zero=zero[1],
+            price_found=not self._prices.ends.lost[line],
+            value_found=not self._plans.ends.lost[line],
         )
 
     def _side(self, line: int, is_high: bool) -> Moves | None:

@@ -86,7 +86,9 @@ def _side(
 
 
 def _interval(known: LinePrices | None) -> tuple[float | str | None, float | str | None]:
-    return (None, None) if known is None else (plain(known.least), plain(known.greatest))
+    if known is None or not known.price_found:
+        return None, None
+    return plain(known.least), plain(known.greatest)
 
 
 def _moves(known: LinePrices | None, side: str | None) -> Moves | None:
@@ -121,8 +123,8 @@ def _column(priced: Priced, line: int) -> Fields:
     return {
         "column": found.head.model.columns[column],
         "value": plain(float(found.answer.x[column])),
-        "least": None if known is None else plain(known.least_value),
-        "greatest": None if known is None else plain(known.greatest_value),
+        "least": plain(known.least_value) if known and known.value_found else None,
+        "greatest": plain(known.greatest_value) if known and known.value_found else None,
         "reduced_cost": plain(float(found.answer.z[column])),
         "least_reduced_cost": least,
         "greatest_reduced_cost": greatest,

@@ -72,6 +72,11 @@ def _uniqueness(about: _About, prices: LinePrices) -> str:
     noun = "dual value" if about.is_row else "reduced cost"
     if prices.is_unique:
         return f"Its {noun} {number(prices.least)} is the only one."
+    if not prices.price_found:
+        return (
+            f"Its {noun} is not the only one; {number(prices.least)} and "
+            f"{number(prices.greatest)} were seen, and the solver gave no usable answer beyond."
+        )
     return (
         f"Its {noun} is {any_number(prices.least, prices.greatest)}; "
         f"the answer shown has {number(about.price)}."
@@ -161,6 +166,8 @@ def _values(about: _About, prices: LinePrices) -> list[str]:
     """Values over all optimal plans, where the sentences before have not said them."""
     held = ZeroSlack.ALWAYS in (prices.lower_zero, prices.upper_zero) or not about.paired
     least, greatest = prices.least_value, prices.greatest_value
+    if not prices.value_found:
+        return ["The solver gave no usable answer on how far its value can go in optimal plans."]
     what = "its row value" if about.is_row else "it"
     if least != greatest:
         return [f"Over all optimal plans {what} is {any_number(least, greatest)}."]
