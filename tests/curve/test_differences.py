@@ -69,7 +69,7 @@ def assert_right_beyond(made):
             assert isinstance(examined(moved), NoOptimum)
 
 
-@settings(max_examples=40, deadline=None)
+@settings(max_examples=20, deadline=None)
 @given(st.data(), models_with_optimum())
 def test_against_solving_again(data, lp):
     found = examined(lp)
@@ -102,7 +102,7 @@ def test_afiro_against_solving_again(names):
     assert_right_beyond(made)
 
 
-@settings(max_examples=60, deadline=None)
+@settings(max_examples=25, deadline=None)
 @given(st.data(), linear_programs())
 def test_one_number_is_moved_and_nothing_else(data, lp):
     if not lp.n:

@@ -121,13 +121,13 @@ def check_ray(lp, found):
     assert abs(lp.c @ ray) <= 1e-9
 
 
-@settings(max_examples=150)
+@settings(max_examples=70)
 @given(models_with_optimum())
 def test_degenerate_models(lp):
     check_against_oracle(lp)
 
 
-@settings(max_examples=100)
+@settings(max_examples=50)
 @given(any_models(5, 6))
 def test_models_with_any_costs(lp):
     check_against_oracle(lp)

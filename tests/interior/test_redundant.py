@@ -155,13 +155,13 @@ def check_against_oracle(lp):
             assert side.reach == pytest.approx(float(reach), abs=1e-9)
 
 
-@settings(max_examples=120)
+@settings(max_examples=60)
 @given(models_with_optimum())
 def test_degenerate_models(lp):
     check_against_oracle(lp)
 
 
-@settings(max_examples=80)
+@settings(max_examples=40)
 @given(any_models(5, 6))
 def test_models_with_any_costs(lp):
     check_against_oracle(lp)

@@ -51,7 +51,7 @@ def check(lp, at_once):
     assert not found, "\n".join(found)
 
 
-@settings(max_examples=220)
+@settings(max_examples=90)
 @example(lp=GIVEN_UP, at_once=False)
 @example(lp=TIE, at_once=False)
 @example(lp=TURNS, at_once=False)
@@ -60,7 +60,7 @@ def test_degenerate_models(lp, at_once):
     check(lp, at_once)
 
 
-@settings(max_examples=180)
+@settings(max_examples=80)
 @given(WITH_ANY_COSTS, st.booleans())
 def test_models_with_any_costs(lp, at_once):
     check(lp, at_once)
