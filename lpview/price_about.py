@@ -4,11 +4,8 @@ from __future__ import annotations
 
 import argparse
 import time
-from collections.abc import Callable
-from dataclasses import replace
 
 from lpview import cli, commands
-from lpview.model import LinearProgram
 from lpview.outcomes import Optimal
 from lpview.priced import Between, StoppedEarlyError
 from lpview.prices import NoPrices
@@ -22,14 +19,11 @@ from lpview.report.document import Block
 from lpview.report.interior import interior_blocks
 from lpview.report.prices import closing, opening
 from lpview.report.redundant import redundant_blocks
-from lpview.run import Claim, Solved, SolveSettings, Unsolved, Watch
+from lpview.run import Ask, Claim, Watch, within
 from lpview.solver import solve, warm_model
 
 WORKING = ("examining prices", "step")
 """What the progress line says."""
-
-Ask = Callable[[LinearProgram, SolveSettings], Solved | Unsolved]
-"""Solves an auxiliary model."""
 
 Written = tuple[tuple[Block, ...], int]
 
@@ -72,14 +66,7 @@ def _status(known: bool) -> int:
 
 def asking(watch: Watch, limit: float | None, started: float) -> Ask:
     """A solver for auxiliary models within what is left of the command's time limit."""
-
-    def ask(lp: LinearProgram, settings: SolveSettings) -> Solved | Unsolved:
-        if limit is not None:
-            left = max(0.0, limit - (time.monotonic() - started))
-            settings = replace(settings, time_limit=left)
-        return solve(lp, settings, watch)
-
-    return ask
+    return within(solve, watch, limit, started)
 
 
 def steps(watch: Watch, limit: float | None, started: float) -> Between:

@@ -29,7 +29,7 @@ from lpview.report import prices as reports
 from lpview.report.check import report, verdict
 from lpview.report.document import Document
 from lpview.report.together import asking_moves, together_report
-from lpview.run import Watch
+from lpview.run import Ask, Watch
 from lpview.solver import warm_model
 
 
@@ -101,7 +101,7 @@ def worked_out(
 
 
 def _asked(
-    found: Optimal, ready: Prices, options: argparse.Namespace, step: Between, ask: price_about.Ask
+    found: Optimal, ready: Prices, options: argparse.Namespace, step: Between, ask: Ask
 ) -> Priced:
     if options.lines:
         lines = commands.lines_asked(found.head.model, "", options.lines)

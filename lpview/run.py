@@ -8,10 +8,11 @@ from __future__ import annotations
 
 import enum
 import threading
+import time
 from collections.abc import Callable, Mapping
-from dataclasses import dataclass, field
+from dataclasses import dataclass, field, replace
 
-from lpview.answer import Answer
+from lpview.answer import Answer, Basis
 from lpview.model import LinearProgram
 
 
@@ -66,6 +67,8 @@ class SolveSettings:
     """Seconds, or None for no limit."""
     iteration_limit: int | None = None
     """Simplex iterations, or None for no limit."""
+    start: Basis | None = None
+    """A basis to begin at, with the simplex method, or None."""
 
 
 @dataclass(frozen=True)
@@ -118,3 +121,22 @@ class Watch:
 
 Solver = Callable[[LinearProgram, SolveSettings, Watch], Solved | Unsolved]
 """Anything that solves; tests put a lying one in its place."""
+
+
+Ask = Callable[[LinearProgram, SolveSettings], Solved | Unsolved]
+"""A solver within somebody's time limit, for auxiliary models."""
+
+
+def within(solve: Solver, watch: Watch, limit: float | None, started: float) -> Ask:
+    """A solver whose runs end when ``limit`` seconds after ``started`` are over.
+
+    ``started`` is a reading of `time.monotonic`.
+    """
+
+    def ask(lp: LinearProgram, settings: SolveSettings) -> Solved | Unsolved:
+        if limit is not None:
+            left = max(0.0, limit - (time.monotonic() - started))
+            settings = replace(settings, time_limit=left)
+        return solve(lp, settings, watch)
+
+    return ask

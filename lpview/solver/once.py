@@ -56,6 +56,8 @@ def solve(
     for name, value in options.items():
         highs.setOptionValue(name, value)
     pass_model(highs, scaled)
+    if settings.start is not None:
+        highs.setBasis(_highs_basis(settings.start))
     _follow(highs, watch)
     started = time.perf_counter()
     highs.run()
@@ -131,6 +133,15 @@ def _basis(lp: LinearProgram, basis: Any) -> Basis:
         column=_statuses(basis.col_status, lp.lower, lp.upper),
         row=_statuses(basis.row_status, lp.row_lower, lp.row_upper),
     )
+
+
+def _highs_basis(start: Basis) -> Any:
+    kinds = {int(kind): kind for kind in highspy.HighsBasisStatus.__members__.values()}
+    basis = highspy.HighsBasis()
+    basis.col_status = [kinds[status] for status in start.column.tolist()]
+    basis.row_status = [kinds[status] for status in start.row.tolist()]
+    basis.valid = True
+    return basis
 
 
 def _statuses(found: list[Any], low: Vector, high: Vector) -> Statuses:

@@ -1,0 +1,1 @@
+"""The optimum verified in exact rational arithmetic, on the numbers as written."""
