@@ -95,6 +95,8 @@ def _complain(text: str, status: int) -> int:
 _COMMANDS = {
     "open": "review a model at the keyboard (the command that MODEL alone is short for)",
     "check": "solve a model and check every KKT condition of the answer",
+    "prove": "prove the optimum in exact arithmetic (short for check --prove)",
+    "verify": "check a certificate that prove has written",
     "prices": "find which prices can be trusted, both ways and how far",
     "plans": "find which other plans are just as good",
     "curve": "follow the optimal objective as one number of the model moves",
@@ -103,6 +105,7 @@ _COMMANDS = {
 }
 
 _WHERE = {
+    "verify": "lpview.proof_commands",
     "prices": "lpview.price_commands",
     "plans": "lpview.plan_commands",
     "curve": "lpview.curve_command",
@@ -121,7 +124,7 @@ def _parser() -> argparse.ArgumentParser:
     commands = parser.add_subparsers(dest="command", required=True, metavar="COMMAND")
     made = {name: commands.add_parser(name, help=text) for name, text in _COMMANDS.items()}
     for name, command in made.items():
-        several = name == "check"
+        several = name in ("check", "prove")
         command.add_argument(
             "models" if several else "model",
             nargs="+" if several else None,
@@ -130,18 +133,27 @@ def _parser() -> argparse.ArgumentParser:
         )
         if name != "open":
             command.add_argument("--output", metavar="FILE", help="write here, not to the screen")
-    for name in ("check", "open", *_WHERE):
+    for name in ("check", "open", "prove", "prices", "plans", "curve"):
         _add_solve_options(made[name])
-    _add_report_options(made["check"])
+    for name in ("check", "prove"):
+        _add_report_options(made[name])
+        made[name].add_argument(
+            "--certificate", metavar="FILE", help="write what was proved, for lpview verify"
+        )
+    made["check"].add_argument(
+        "--prove", action="store_true", help="prove the optimum in exact rational arithmetic"
+    )
+    made["prove"].set_defaults(prove=True)
+    made["verify"].add_argument("certificate", metavar="CERTIFICATE", help="what prove has written")
     add_prices_options(made["prices"])
     add_plans_options(made["plans"])
     add_curve_options(made["curve"])
-    for name in ("check", "open"):
+    for name in ("check", "prove", "open"):
         _add_route_options(made[name])
     made["open"].add_argument(
         "--ascii", action="store_true", help="draw all marks with plain characters"
     )
-    made["open"].set_defaults(format="text", full=False, prices=False)
+    made["open"].set_defaults(format="text", full=False, prices=False, prove=False)
     return parser
 
 
@@ -197,10 +209,12 @@ def _add_report_options(check: argparse.ArgumentParser) -> None:
 
 def _wrong_use(options: argparse.Namespace) -> str:
     """What is wrong with options that are right one by one, or an empty string."""
-    if options.command in _WHERE:
+    if options.command in ("prices", "plans", "curve"):
         return wrong_use(options)
-    if options.command != "check":
+    if options.command not in ("check", "prove"):
         return ""
+    if options.certificate and (not options.prove or len(options.models) > 1):
+        return "expected --certificate together with --prove and one MODEL"
     # Ledgers, families and JSON are three different things to print.
     if options.format == "json" and (options.lines or options.families):
         return (

@@ -22,13 +22,14 @@ from lpview.decimals import number_text
 from lpview.examination import examine
 from lpview.model import LinearProgram
 from lpview.outcomes import Examination, NoOptimum, Optimal, Request, SecondRoute
-from lpview.report.document import Document
+from lpview.report.document import Document, Pairs
 from lpview.run import Method, SolveSettings, Watch
 from lpview.scaling import NotRepresentableError
 
 if TYPE_CHECKING:  # the check alone starts sooner without them
     from lpview.priced import Priced
     from lpview.prices import NoPrices
+    from lpview.proof.results import Proof
 
 
 Line = tuple[str, str]
@@ -55,14 +56,14 @@ def dual(options: argparse.Namespace) -> list[int]:
     """``lpview dual``: the dual linear program, as blocks that lpview reads."""
     from lpview.dual import build_dual
 
-    program = build_dual(_read(options.model)[0].model).program
+    program = build_dual(read(options.model)[0].model).program
     write(write_blocks(program), options.output)
     return [cli.DONE]
 
 
 def convert(options: argparse.Namespace) -> list[int]:
     """``lpview convert``: the same model as canonical blocks."""
-    write(write_blocks(_read(options.model)[0].model), options.output)
+    write(write_blocks(read(options.model)[0].model), options.output)
     return [cli.DONE]
 
 
@@ -74,27 +75,44 @@ class Checked:
     """What the check came to; its marks know of the prices."""
     priced: Priced | NoPrices | None = None
     """The prices; None where they were not asked for, or there is no answer."""
+    proof: Proof | None = None
+    """The proof; None where it was not asked for."""
 
 
 def _checked(source: str, options: argparse.Namespace) -> Checked:
     watch, started = Watch(), time.monotonic()
     found = examined(source, options, watch, options.lines)
-    if not options.prices or not isinstance(found, Optimal):
-        return Checked(found)
-    from lpview.price_commands import worked_out
+    priced = proof = None
+    if options.prices and isinstance(found, Optimal):
+        from lpview.price_commands import worked_out
 
-    return Checked(*worked_out(found, options, watch, started))
+        found, priced = worked_out(found, options, watch, started)
+    if options.prove:
+        from lpview.proof_commands import proved
+
+        proof = proved(found, options, watch, started)
+    return Checked(found, priced, proof)
 
 
 def _status(checked: Checked) -> int:
-    if checked.priced is None:
-        return status(checked.found)
-    from lpview.price_commands import price_status
+    statuses = [status(checked.found)]
+    if checked.proof is not None:
+        from lpview.proof_commands import proof_status
 
-    return cli.worst([status(checked.found), price_status(checked.priced)])
+        statuses = [proof_status(checked.found, checked.proof)]
+    if checked.priced is not None:
+        from lpview.price_commands import price_status
+
+        statuses.append(price_status(checked.priced))
+    return cli.worst(statuses)
 
 
-def _read(source: str) -> tuple[Reading, bytes | None]:
+def prove(options: argparse.Namespace) -> list[int]:
+    """``lpview prove``: short for ``check --prove``."""
+    return check(options)
+
+
+def read(source: str) -> tuple[Reading, bytes | None]:
     """A model, and the bytes it came in where that was standard input."""
     if source == "-":
         data = sys.stdin.buffer.read()
@@ -112,7 +130,7 @@ def examined(
     from lpview.progress import watched
     from lpview.solver import solve
 
-    reading, data = _read(source)
+    reading, data = read(source)
     lines_asked(reading.model, source, lines)
     if data is not None:
         source = _saved(data, options.output)
@@ -139,7 +157,7 @@ def _saved(data: bytes, output: str | None) -> str:
 
     folder = Path(output).parent if output else Path()
     path = folder / f"model-{hashlib.sha256(data).hexdigest()[:12]}.csv"
-    _replace(path, data)
+    replace_file(path, data)
     sys.stderr.write(f"saved standard input: {path}\n")
     return str(path)
 
@@ -161,7 +179,7 @@ def _request(source: str, options: argparse.Namespace) -> Request:
 
 def _command(source: str, options: argparse.Namespace) -> str:
     """The command that reproduces the report: every option that is not a default."""
-    command = "check" if options.command == "open" else options.command
+    command = {"open": "check", "prove": "check"}.get(options.command, options.command)
     words = ["lpview", command, source]
     for name, default in (("tolerance", 1e-9), ("zero", 1e-9), ("time_limit", None)):
         if getattr(options, name) != default:
@@ -171,7 +189,8 @@ def _command(source: str, options: argparse.Namespace) -> str:
     words += ["--no-crossover"] * options.no_crossover + ["--full"] * options.full
     route = {"always": ["--second-route"], "never": ["--no-second-route"]}
     words += route.get(options.second_route, []) if command == "check" else []
-    words += ["--prices"] * (command == "check" and options.prices)
+    if command == "check":
+        words += ["--prices"] * options.prices + ["--prove"] * options.prove
     if options.format != "text":
         words += ["--format", options.format]
     return shlex.join(words)
@@ -188,14 +207,34 @@ def _rendered(checked: list[Checked], options: argparse.Namespace) -> str:
     if options.format == "json":
         from lpview.report import json
 
-        found = [one.found for one in checked]
-        added = []
-        if options.prices:
-            from lpview.report import price_json
-
-            added = [price_json.fields(one.priced) for one in checked]
+        added = [_added(one, options) for one in checked]
+        found = [_with_exact_zeros(one) for one in checked]
         return json.render(found if len(options.models) > 1 else found[0], added)
     return "\n".join(rendered(_document(one, options), options.format) for one in checked)
+
+
+def _added(one: Checked, options: argparse.Namespace) -> dict[str, object]:
+    """JSON fields of what was asked for beyond the check."""
+    added: dict[str, object] = {}
+    if options.prices:
+        from lpview.report import price_json
+
+        added.update(price_json.fields(one.priced))
+    if options.prove:
+        from lpview.report.proof import proof_json
+
+        added.update(proof_json(one.proof))
+    return added
+
+
+def _with_exact_zeros(one: Checked) -> Examination:
+    """The examination, its flags by exact zeros where there is a proof."""
+    from lpview.proof.exact import with_exact_zeros
+    from lpview.proof.results import ProvedOptimal
+
+    if isinstance(one.proof, ProvedOptimal) and isinstance(one.found, Optimal):
+        return with_exact_zeros(one.found, one.proof)
+    return one.found
 
 
 def rendered(document: Document, form: str) -> str:
@@ -207,7 +246,7 @@ def rendered(document: Document, form: str) -> str:
 
 def _document(checked: Checked, options: argparse.Namespace) -> Document:
     """What was asked for: the report, its families, or the ledgers of some lines."""
-    found, priced = checked.found, checked.priced
+    found, priced, proof = checked.found, checked.priced, checked.proof
     if options.families:
         from lpview.report.families import families_report
 
@@ -217,17 +256,19 @@ def _document(checked: Checked, options: argparse.Namespace) -> Document:
 
         lines = lines_asked(found.head.model, "", options.lines)
         if priced is None:
-            return ledger_report(found, lines, options.full)
+            return ledger_report(found, lines, options.full, proof=proof)
         from lpview.report.prices import lines_of, problem
 
-        return ledger_report(found, lines, options.full, lines_of(priced), problem(priced))
+        known = lines_of(priced)
+        return ledger_report(found, lines, options.full, known, problem(priced), proof)
     from lpview.report.check import report
 
-    if priced is None:
-        return report(found, options.full)
-    from lpview.report.prices import check_facts
+    prices: Pairs = ()
+    if priced is not None:
+        from lpview.report.prices import check_facts
 
-    return report(found, options.full, prices=check_facts(priced, options.full))
+        prices = check_facts(priced, options.full)
+    return report(found, options.full, prices=prices, proof=proof)
 
 
 def lines_asked(lp: LinearProgram, source: str, asked: Sequence[Line]) -> list[int]:
@@ -250,13 +291,13 @@ def lines_asked(lp: LinearProgram, source: str, asked: Sequence[Line]) -> list[i
 def write(text: str, output: str | None) -> None:
     """Write to a file, whole or not at all, or to standard output."""
     if output is not None:
-        _replace(Path(output), text.encode())
+        replace_file(Path(output), text.encode())
         return
     sys.stdout.buffer.write(text.encode())
     sys.stdout.buffer.flush()
 
 
-def _replace(path: Path, data: bytes) -> None:
+def replace_file(path: Path, data: bytes) -> None:
     """Write a file whole or not at all; a device or pipe is written as it is."""
     if path.exists() and not path.is_file():
         path.write_bytes(data)

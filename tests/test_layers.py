@@ -23,6 +23,7 @@ OUTER = (
         "lpview.price_commands",
         "lpview.price_options",
         "lpview.plan_commands",
+        "lpview.proof_commands",
     ),
     *("lpview.curve_command", "lpview.curve_options"),
 )

@@ -17,6 +17,8 @@ MOST_ROWS = 10
 """Zero-slack rows shown unless the full report is asked for."""
 FEWER_ROWS = 4
 """So many fewer where prices are reported too."""
+FEWER_FOR_PROOF = 3
+"""So many fewer where a proof is reported too."""
 MOST_FLAGGED = 10
 """Other flagged lines named unless the full report is asked for."""
 
@@ -24,17 +26,22 @@ _PASSED = {True: "passed", False: "FAILED", None: "holds by definition"}
 
 
 def body(
-    found: Optimal, full: bool, tables: tuple[Table, ...] = (), prices: Pairs = ()
+    found: Optimal,
+    full: bool,
+    tables: tuple[Table, ...] = (),
+    prices: Pairs = (),
+    proved: bool = False,
 ) -> tuple[Block, ...]:
     """Everything between the verdict and the provenance.
 
     ``tables``, if any, stand in place of the zero-slack rows; facts about prices, if any,
-    stand with the flags, and leave room for fewer of these rows.
+    stand with the flags, and leave room for fewer of these rows; so does a proof above.
     """
+    most = MOST_ROWS - FEWER_ROWS * bool(prices) - FEWER_FOR_PROOF * proved
     return (
         _conditions(found),
         Facts(_objectives(found) + _routes(found)),
-        *(tables or (_zero_slack_rows(found, full, MOST_ROWS - FEWER_ROWS * bool(prices)),)),
+        *(tables or (_zero_slack_rows(found, full, most),)),
         Facts(_flags(found, full) + prices),
     )
 

@@ -7,11 +7,14 @@ import platform
 from lpview import __version__
 from lpview.model import LinearProgram
 from lpview.outcomes import Examination, Head, NoOptimum, NotEstablished, Optimal, Stopped
+from lpview.proof.exact import with_exact_zeros
+from lpview.proof.results import Proof, ProvedOptimal
 from lpview.repair.search import Infeasible
 from lpview.report import answer, certificate
 from lpview.report.document import Block, Command, Document, Facts, Pairs, Sentence, Table
 from lpview.report.names import safe
 from lpview.report.numbers import count, residual
+from lpview.report.proof import proof_facts, proof_verdict
 
 CAUTION = (
     "A verified optimum is only as good as the model; local rules and licensed practice decide."
@@ -24,17 +27,26 @@ def report(
     full: bool = False,
     tables: tuple[Table, ...] = (),
     prices: Pairs = (),
+    proof: Proof | None = None,
 ) -> Document:
     """The report of an examination; at most 40 lines of text unless ``full``.
 
     ``tables``, if any, stand in place of an answer's zero-slack rows. ``prices`` are facts
-    about an answer's prices, where these were asked for.
+    about an answer's prices, where these were asked for; so is ``proof``, which decides the
+    verdict, and which zeros are zeros.
     """
     head = found.head
+    words = verdict(found)
+    facts: Pairs = ()
+    if proof is not None:
+        words, facts = proof_verdict(found, proof, words), proof_facts(found, proof, full)
+        if isinstance(found, Optimal) and isinstance(proof, ProvedOptimal):
+            found = with_exact_zeros(found, proof)
     return (
-        Sentence(f"{_title(head)}: {verdict(found)}", strong=True),
+        Sentence(f"{_title(head)}: {words}", strong=True),
         Sentence("; ".join([shape(head.model), *_notes(head)])),
-        *_body(found, full, tables, prices),
+        *((Facts(facts),) if facts else ()),
+        *_body(found, full, tables, prices, bool(facts)),
         Facts(provenance(head)),
         Command("reproduce", head.request.command),
         Sentence(CAUTION),
@@ -91,10 +103,10 @@ def _notes(head: Head) -> list[str]:
 
 
 def _body(
-    found: Examination, full: bool, tables: tuple[Table, ...], prices: Pairs
+    found: Examination, full: bool, tables: tuple[Table, ...], prices: Pairs, proved: bool
 ) -> tuple[Block, ...]:
     if isinstance(found, Optimal):
-        return answer.body(found, full, tables, prices)
+        return answer.body(found, full, tables, prices, proved)
     if isinstance(found, NoOptimum):
         return certificate.body(found, full)
     if isinstance(found, NotEstablished):

@@ -13,12 +13,15 @@ from lpview.marks import Flag
 from lpview.model import LinearProgram
 from lpview.outcomes import Examination, Optimal
 from lpview.prices import LinePrices
+from lpview.proof.exact import with_exact_zeros
+from lpview.proof.results import Proof, ProvedOptimal
 from lpview.report import asking
 from lpview.report.check import CAUTION, report, verdict
 from lpview.report.document import Block, Command, Document, Facts, Sentence, Table
 from lpview.report.ledger_words import meaning
 from lpview.report.names import fitted, safe
 from lpview.report.numbers import count, number, residual
+from lpview.report.proof import exact_sentences, proof_verdict
 
 NONE: Mapping[int, LinePrices] = MappingProxyType({})
 """No prices were worked out."""
@@ -32,22 +35,31 @@ def ledger_report(
     full: bool = False,
     prices: Mapping[int, LinePrices] = NONE,
     problem: str = "",
+    proof: Proof | None = None,
 ) -> Document:
     """The ledgers of lines numbered as in `lpview.kkt`, and how to get them again.
 
     ``found.head.request.command`` is the command of the check; the options that name
     the lines are added to it. An examination without an answer has no ledgers, and
     the usual report says why. ``prices`` has those of lines where they were worked out,
-    ``problem`` says why some were not.
+    ``problem`` says why some were not. A ``proof`` decides the verdict and gives exact numbers.
     """
     found = asking(found, *line_options(found.head.model, lines))
     if not isinstance(found, Optimal):
-        return report(found, full)
-    head = found.head
+        return report(found, full, proof=proof)
+    head, words = found.head, verdict(found)
+    if proof is not None:
+        words = proof_verdict(found, proof, words)
+        if isinstance(proof, ProvedOptimal):
+            found = with_exact_zeros(found, proof)
     return (
-        Sentence(f"{safe(head.request.source)}: {verdict(found)}", strong=True),
+        Sentence(f"{safe(head.request.source)}: {words}", strong=True),
         *([Sentence(problem)] if problem else []),
-        *(block for line in lines for block in ledger_blocks(found, line, full, prices.get(line))),
+        *(
+            block
+            for line in lines
+            for block in ledger_blocks(found, line, full, prices.get(line), proof)
+        ),
         Command("reproduce", head.request.command),
         Sentence(CAUTION),
     )
@@ -65,7 +77,11 @@ def line_options(lp: LinearProgram, lines: Sequence[int]) -> list[str]:
 
 
 def ledger_blocks(
-    found: Optimal, line: int, full: bool = False, prices: LinePrices | None = None
+    found: Optimal,
+    line: int,
+    full: bool = False,
+    prices: LinePrices | None = None,
+    proof: Proof | None = None,
 ) -> tuple[Block, ...]:
     """The ledger of one line: its terms, what they add up to, what that means."""
     entry = ledger(found, line)
@@ -73,7 +89,14 @@ def ledger_blocks(
         _terms(found.head.model, entry, full),
         Facts(_totals(entry)),
         *map(Sentence, meaning(found, entry, prices)),
+        *map(Sentence, _exactly(found, line, proof)),
     )
+
+
+def _exactly(found: Optimal, line: int, proof: Proof | None) -> tuple[str, ...]:
+    if not isinstance(proof, ProvedOptimal):
+        return ()
+    return exact_sentences(found.head.model, proof, line)
 
 
 def heading(entry: Ledger) -> str:

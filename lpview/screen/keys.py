@@ -55,6 +55,7 @@ KEYS = (
     Key("v", "curve", "value curve of this line's side, bound or cost", PRICES, "Curve"),
     Key("plus", "together", "what several rows are worth, moved together", PRICES),
     Key("x", "pause_prices", "stop examining prices, or go on", PRICES),
+    Key("e", "prove", "prove the optimum exactly, or stop proving it", SHOW),
     Key("question_mark,f1", "help", "all keys on one page", SHOW, "Keys"),
     Key("t", "ticket('text')", "save the check as text, and copy it", TAKE, "Ticket"),
     Key("m", "ticket('markdown')", "save the check as Markdown, and copy it", TAKE),

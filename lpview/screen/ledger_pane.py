@@ -9,10 +9,12 @@ import numpy as np
 from lpview.ledger import Ledger, ledger
 from lpview.model import Vector
 from lpview.outcomes import Optimal
+from lpview.proof.results import ProvedOptimal
 from lpview.report.ledger import heading
 from lpview.report.ledger_words import meaning
 from lpview.report.names import fitted, width
 from lpview.report.numbers import fitted_number
+from lpview.report.proof import exact_sentences
 from lpview.screen.columns import NUMBER
 from lpview.screen.pane import CURSOR, HEADING, PLAIN, LinesPane, Runs
 from lpview.screen.price_book import PriceBook
@@ -28,6 +30,7 @@ class LedgerPane(LinesPane):
     ) -> None:
         super().__init__(**options)
         self.found, self.glyphs, self.book = found, glyphs, book
+        self.proof: ProvedOptimal | None = None
         self.entry: Ledger | None = None
         self._totals: list[str] = []
 
@@ -116,7 +119,10 @@ class LedgerPane(LinesPane):
         """What the terms leave, in numbers and in words."""
         missing = self.book.missing(entry.line)
         sentences = meaning(self.found, entry, self.book.line(entry.line))
-        return [_numbers(entry), *sentences, *([missing] if missing else [])]
+        exactly: tuple[str, ...] = ()
+        if self.proof is not None:
+            exactly = exact_sentences(self.found.head.model, self.proof, entry.line)
+        return [_numbers(entry), *exactly, *sentences, *([missing] if missing else [])]
 
 
 def _numbers(entry: Ledger) -> str:

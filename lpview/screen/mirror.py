@@ -8,13 +8,13 @@ from textual.worker import get_current_worker
 
 from lpview.screen import ticket
 from lpview.screen.outcome import PageScreen, help_text
-from lpview.screen.priced_screen import PricedScreen
+from lpview.screen.proved_screen import ProvedScreen
 
 TURNING = "turning the mirror; Escape gives up"
 """Said while the dual is rebuilt and checked."""
 
 
-class MirrorScreen(PricedScreen):
+class MirrorScreen(ProvedScreen):
     """Linked panes, finding in them, prices found meanwhile, pages over them, tickets from them."""
 
     _turning = False

@@ -49,6 +49,7 @@ class PricedScreen(FindingScreen):
     def __init__(self, found: Optimal, ascii_marks: bool = False) -> None:
         super().__init__(found, ascii_marks)
         self.pricing = Pricing(found, self.post_message)
+        self.marks_without_prices = found.marks
         self._is_stopped = False
 
     # The work ----------------------------------------------------------------
@@ -105,7 +106,7 @@ class PricedScreen(FindingScreen):
     def on_prices_begun(self, message: PricesBegun) -> None:
         """The filter and the marks of prices that are not unique."""
         self.book.begin(message.not_unique)
-        self.marks = with_prices(self.found.marks, self.book.not_unique)
+        self.marks = with_prices(self.marks_without_prices, self.book.not_unique)
         self.constraints.refresh()
         self.variables.refresh()
         self.strip.refresh()

@@ -43,21 +43,29 @@ SHORTEST_NAME = 16
 """Cells that the model's name keeps before the objective loses digits."""
 
 
-def strip_lines(found: Optimal, cells: int, glyphs: Glyphs, progress: str) -> list[Runs]:
-    """The strip at a width, line by line; ``progress`` is that of the prices."""
+def strip_lines(
+    found: Optimal, cells: int, glyphs: Glyphs, progress: str, proof: str = ""
+) -> list[Runs]:
+    """The strip at a width, line by line.
+
+    ``progress`` is that of the prices; ``proof``, where there is one or it is being worked
+    out, stands in place of the check's own word.
+    """
     judged = {verdict.condition: verdict for verdict in found.verdicts}
     middle, last = ([judged[condition] for condition in line] for line in LINES[1:])
     room = cells - len(progress) - 2
     return [
-        _first(found, cells, glyphs),
+        _first(found, cells, glyphs, proof),
         _gauges(middle, cells, glyphs),
         [*_gauges(last, room, glyphs), (progress, PLAIN)],
     ]
 
 
-def _first(found: Optimal, cells: int, glyphs: Glyphs) -> Runs:
+def _first(found: Optimal, cells: int, glyphs: Glyphs, proof: str) -> Runs:
     flags = found.marks.flags
     word, style = ("verified", HEADING) if found.passed else ("NOT VERIFIED", FAULT)
+    if proof:
+        word, style = proof, FAULT if proof.isupper() else HEADING
     counts = [f"zero slack {np.count_nonzero(flags[Flag.ZERO_SLACK])}"]
     if Flag.DEGENERATE in flags:
         counts.append(f"degenerate {np.count_nonzero(flags[Flag.DEGENERATE])}")
@@ -112,9 +120,11 @@ class VerdictStrip(Widget):
     def __init__(self, found: Optimal, glyphs: Glyphs, book: PriceBook) -> None:
         super().__init__(id="strip")
         self.found, self.glyphs, self.book = found, glyphs, book
+        self.proof = ""
 
     def render_line(self, y: int) -> Strip:
         """One line of the strip."""
-        lines = strip_lines(self.found, self.size.width, self.glyphs, self.book.progress())
+        progress = self.book.progress()
+        lines = strip_lines(self.found, self.size.width, self.glyphs, progress, self.proof)
         segments = [Segment(text, style) for text, style in lines[y]] if y < len(lines) else []
         return Strip(segments).adjust_cell_length(self.size.width, self.rich_style)

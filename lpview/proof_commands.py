@@ -1,0 +1,85 @@
+"""What ``check --prove``, ``prove`` and ``verify`` do."""
+
+from __future__ import annotations
+
+import argparse
+import sys
+import time
+from fractions import Fraction
+from pathlib import Path
+
+from lpview import cli, commands
+from lpview.blocks import write_blocks
+from lpview.outcomes import Examination, Optimal, Stopped
+from lpview.progress import watched
+from lpview.proof import kernel
+from lpview.proof.prove import StoppedError, prove
+from lpview.proof.results import NotProved, Proof, ProvedOptimal
+from lpview.report.exact_numbers import exact_text
+from lpview.run import Claim, Watch, within
+from lpview.solver import solve
+
+WORKING = ("proving", "step")
+"""What the progress line says."""
+
+
+def proved(found: Examination, options: argparse.Namespace, watch: Watch, started: float) -> Proof:
+    """Prove what an examined model comes to, and write the certificate if one was asked for.
+
+    The command's time limit counts from ``started``, a reading of `time.monotonic`.
+    """
+    head = found.head
+    if isinstance(found, Stopped):
+        return NotProved(head.run.claim.value, None, None, False, None)
+    limit = options.time_limit
+    ask = within(solve, watch, limit, started)
+
+    def between() -> None:
+        watch.iterations += 1
+        if watch.stop.is_set():
+            raise StoppedError(Claim.INTERRUPTED.value)
+        if limit is not None and time.monotonic() - started > limit:
+            raise StoppedError(Claim.TIME_LIMIT.value)
+
+    def work() -> Proof:
+        answer = found.answer if isinstance(found, Optimal) else None
+        basis, guess = (answer.basis, answer.y) if answer else (None, None)
+        return prove(head.model, basis, ask, head.request.solve, between, guess)
+
+    watch.iterations = 0
+    proof = watched(work, watch, head.model.name, WORKING)
+    if options.certificate and not isinstance(proof, NotProved):
+        from lpview.proof.certificate import write_certificate
+
+        text = write_certificate(head.model, head.sha256, proof)
+        commands.replace_file(Path(options.certificate), text.encode())
+    return proof
+
+
+def proof_status(found: Examination, proof: Proof) -> int:
+    """The exit status: a proof decides; without one, the check may still have failed."""
+    if isinstance(proof, ProvedOptimal):
+        return cli.DONE
+    if isinstance(proof, NotProved):
+        return cli.worst([commands.status(found), cli.NOT_ESTABLISHED])
+    return cli.NO_OPTIMUM
+
+
+def verify(options: argparse.Namespace) -> list[int]:
+    """``lpview verify``: check a certificate with the kernel, which shares nothing with us."""
+    canonical = write_blocks(commands.read(options.model)[0].model)
+    try:
+        certificate = Path(options.certificate).read_bytes()
+    except OSError as error:
+        problem = error.strerror or str(error)
+        sys.stderr.write(f"{options.certificate}: expected a certificate, got: {problem}\n")
+        return [cli.USAGE]
+    try:
+        verdict = kernel.verify(canonical.encode(), certificate)
+    except ValueError as refusal:
+        commands.write(f"{options.certificate}: REFUSED: {refusal}\n", options.output)
+        return [cli.FAILED]
+    claim, _, value = verdict.rpartition(" ")
+    words = f"{claim} {exact_text(Fraction(value))}"
+    commands.write(f"{options.certificate}: accepted as a proof: {words}\n", options.output)
+    return [cli.DONE]
