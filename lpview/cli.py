@@ -225,6 +225,8 @@ def _wrong_use(options: argparse.Namespace) -> str:
         return "expected --row and --column, or --families, got both"
     if options.prices and options.families:
         return "expected --prices or --families, got both"
+    if options.prove and options.families:
+        return "expected --prove or --families, got both"
     return ""
 
 

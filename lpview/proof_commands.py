@@ -10,9 +10,10 @@ from pathlib import Path
 
 from lpview import cli, commands
 from lpview.blocks import write_blocks
-from lpview.outcomes import Examination, Optimal, Stopped
+from lpview.outcomes import Examination, Head, Optimal, Stopped
 from lpview.progress import watched
 from lpview.proof import kernel
+from lpview.proof.certificate import write_certificate
 from lpview.proof.prove import StoppedError, prove
 from lpview.proof.results import NotProved, Proof, ProvedOptimal
 from lpview.report.exact_numbers import exact_text
@@ -30,7 +31,10 @@ def proved(found: Examination, options: argparse.Namespace, watch: Watch, starte
     """
     head = found.head
     if isinstance(found, Stopped):
-        return NotProved(head.run.claim.value, None, None, False, None)
+        proof: Proof = NotProved(head.run.claim.value, None, None, False, None)
+        if options.certificate:
+            _write_certificate(head, proof, options.certificate)
+        return proof
     limit = options.time_limit
     ask = within(solve, watch, limit, started)
 
@@ -48,12 +52,18 @@ def proved(found: Examination, options: argparse.Namespace, watch: Watch, starte
 
     watch.iterations = 0
     proof = watched(work, watch, head.model.name, WORKING)
-    if options.certificate and not isinstance(proof, NotProved):
-        from lpview.proof.certificate import write_certificate
-
-        text = write_certificate(head.model, head.sha256, proof)
-        commands.replace_file(Path(options.certificate), text.encode())
+    if options.certificate:
+        _write_certificate(head, proof, options.certificate)
     return proof
+
+
+def _write_certificate(head: Head, proof: Proof, target: str) -> None:
+    """Write what was proved; nothing is written where nothing was."""
+    if isinstance(proof, NotProved):
+        sys.stderr.write(f"{target}: not written, for nothing was proved: {proof.reason}\n")
+        return
+    text = write_certificate(head.model, head.sha256, proof)
+    commands.replace_file(Path(target), text.encode())
 
 
 def proof_status(found: Examination, proof: Proof) -> int:

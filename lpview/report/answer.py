@@ -17,7 +17,7 @@ MOST_ROWS = 10
 """Zero-slack rows shown unless the full report is asked for."""
 FEWER_ROWS = 4
 """So many fewer where prices are reported too."""
-FEWER_FOR_PROOF = 3
+FEWER_FOR_PROOF = 4
 """So many fewer where a proof is reported too."""
 MOST_FLAGGED = 10
 """Other flagged lines named unless the full report is asked for."""

@@ -7,6 +7,7 @@ exact numbers of its line.
 from __future__ import annotations
 
 import threading
+import time
 from functools import partial
 
 from textual.message import Message
@@ -21,6 +22,18 @@ from lpview.screen.priced_screen import PricedScreen
 
 PROVING = "proving; the same key stops it"
 """Said while the proof is worked out."""
+
+
+EVERY = 0.5
+"""Seconds between two messages on how far the proof is."""
+
+
+class ProofStep(Message):
+    """So many steps of the proof are done."""
+
+    def __init__(self, steps: int) -> None:
+        super().__init__()
+        self.steps = steps
 
 
 class ProofEnded(Message):
@@ -53,7 +66,7 @@ class ProvedScreen(PricedScreen):
             self.say(self._words(self.proof))
         else:
             self._stop_proving = threading.Event()
-            self._show_proof_state("verified, proving" if self.found.passed else "proving")
+            self._show_proof_state(self._proving)
             self.say(PROVING)
             self.run_worker(partial(self._prove, self._stop_proving), group="proof", thread=True)
 
@@ -62,9 +75,16 @@ class ProvedScreen(PricedScreen):
         from lpview.run import Claim, Watch, within
         from lpview.solver import solve
 
+        steps, posted = 0, time.monotonic()
+
         def between() -> None:
+            nonlocal steps, posted
+            steps += 1
             if stop.is_set():
                 raise StoppedError(Claim.INTERRUPTED.value)
+            if time.monotonic() - posted > EVERY:
+                posted = time.monotonic()
+                self.post_message(ProofStep(steps))
 
         head = self.found.head
         ask = within(solve, Watch(stop=stop), None, 0.0)
@@ -75,6 +95,15 @@ class ProvedScreen(PricedScreen):
             self.post_message(ProofEnded(None, told(error)[0]))
             return
         self.post_message(ProofEnded(proof))
+
+    def on_proof_step(self, message: ProofStep) -> None:
+        """Show how far the proof is."""
+        if self._stop_proving is not None:
+            self._show_proof_state(f"{self._proving}, step {message.steps}")
+
+    @property
+    def _proving(self) -> str:
+        return "verified, proving" if self.found.passed else "proving"
 
     def on_proof_ended(self, message: ProofEnded) -> None:
         """Show what was proved."""

@@ -63,6 +63,12 @@ def test_a_proved_optimum(capsys: pytest.CaptureFixture[str]) -> None:
     assert out.count("\n") <= 40
 
 
+def test_a_report_with_everything_fits_a_page(capsys: pytest.CaptureFixture[str]) -> None:
+    for name in ("winter.csv", "season.csv"):
+        _, out, _ = run(capsys, "prove", str(MODELS / name), "--prices")
+        assert out.count("\n") <= 40
+
+
 def test_prove_is_short_for_check_prove(capsys: pytest.CaptureFixture[str]) -> None:
     short = run(capsys, "prove", str(MODELS / "spring.csv"))
     assert short == run(capsys, "check", str(MODELS / "spring.csv"), "--prove")
@@ -174,3 +180,22 @@ def test_stopped_by_the_time_limit(
     assert "verified: every condition passed at 1e-9 scaled; not proved" in out
     assert "not reached: time limit reached" in out
     assert "what is rigorous  " in out
+
+
+def test_no_certificate_of_nothing(
+    tmp_path: Path, monkeypatch: pytest.MonkeyPatch, capsys: pytest.CaptureFixture[str]
+) -> None:
+    readings = iter(range(0, 10**9, 100))
+    monkeypatch.setattr("lpview.proof_commands.time.monotonic", lambda: float(next(readings)))
+    target = tmp_path / "proof.txt"
+    words = ("prove", str(MODELS / "winter.csv"), "--time-limit", "50")
+    status, _, err = run(capsys, *words, "--certificate", str(target))
+    assert (status, target.exists()) == (4, False)
+    assert err == f"{target}: not written, for nothing was proved: time limit reached\n"
+
+
+def test_a_proof_of_families_is_refused(capsys: pytest.CaptureFixture[str]) -> None:
+    with pytest.raises(SystemExit) as left:
+        cli.main(["prove", str(MODELS / "winter.csv"), "--families"])
+    assert left.value.code == 2
+    assert "expected --prove or --families, got both" in capsys.readouterr().err
