@@ -240,8 +240,9 @@ def _prices(
     wrong: dict[int, Fraction] = {}
     sign = int(lp.sense.sign)
     for i in np.flatnonzero(basis.row != LineStatus.BASIC).tolist():
-        if not lp.is_equality[i]:
-            _judge(wrong, i, sign, y[i], int(basis.row[i]))
+        allowed = lp.is_equality[i] or _is_allowed(sign * y.numerators[i], int(basis.row[i]))
+        if not allowed:
+            wrong[i] = y[i]
     toward = sign * reduced * np.where(basis.column == LineStatus.UPPER, -1.0, 1.0)
     plain = (toward > ROUNDING * size) & (basis.column != LineStatus.FREE)
     plain |= lp.is_fixed & (np.abs(reduced) > ROUNDING * size)
@@ -254,17 +255,14 @@ def _prices(
         zero[lp.m + j] = total == 0
         price = Fraction(total, scaled.denominator)
         reduced[j] = float(price)
-        if not lp.is_fixed[j]:
-            _judge(wrong, lp.m + j, sign, price, int(basis.column[j]))
+        if not lp.is_fixed[j] and not _is_allowed(sign * total, int(basis.column[j])):
+            wrong[lp.m + j] = price
     reduced[basic] = 0.0
     return np.concatenate([dual, reduced]), zero, wrong
 
 
-def _judge(wrong: dict[int, Fraction], line: int, sign: int, price: Fraction, status: int) -> None:
-    allowed = {
-        LineStatus.LOWER: sign * price >= 0,
-        LineStatus.UPPER: sign * price <= 0,
-        LineStatus.FREE: price == 0,
-    }
-    if not allowed[LineStatus(status)]:
-        wrong[line] = price
+def _is_allowed(price: int, status: int) -> bool:
+    """Whether a price, as if minimizing, has a sign that the line's end allows."""
+    if status == LineStatus.LOWER:
+        return price >= 0
+    return price <= 0 if status == LineStatus.UPPER else price == 0

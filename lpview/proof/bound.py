@@ -11,9 +11,11 @@ from __future__ import annotations
 from collections.abc import Iterable, Iterator
 from fractions import Fraction
 
+import numpy as np
+
 from lpview.model import Vector
 from lpview.proof.integers import End, Integers
-from lpview.proof.refine import reduced_costs
+from lpview.proof.refine import reduced_numerators
 from lpview.proof.results import ExactVector
 
 SHRUNK = (40, 30, 20, 10)
@@ -55,7 +57,8 @@ def _with_sides(numbers: Integers, y: ExactVector) -> ExactVector:
 
 
 def from_doubles(values: Vector) -> ExactVector:
-    """Doubles as they are, over one power of two."""
+    """Doubles as they are, over one power of two; 0 for those that are no numbers."""
+    values = np.where(np.isfinite(values), values, 0.0)
     ratios = [float(value).as_integer_ratio() for value in values]
     common = max((bottom for _, bottom in ratios), default=1)
     return ExactVector(tuple(top * (common // bottom) for top, bottom in ratios), common)
@@ -63,16 +66,16 @@ def from_doubles(values: Vector) -> ExactVector:
 
 def dual_bound(numbers: Integers, y: ExactVector) -> Fraction | None:
     """The least objective that ``y`` leaves possible (greatest when maximizing), or None."""
+    reduced, common = reduced_numerators(numbers, y)
+    rows = [n * (common // y.denominator) for n in y.numerators]
     sign = int(numbers.lp.sense.sign)
-    total = numbers.offset
-    for prices, ends in (
-        ([y[i] for i in range(len(y))], numbers.row_ends),
-        (reduced_costs(numbers, y), numbers.column_ends),
-    ):
+    # Sums of integers, one for each denominator of an end, are quicker than of fractions.
+    sums: dict[int, int] = {}
+    for prices, ends in ((rows, numbers.row_ends), (reduced, numbers.column_ends)):
         for k, price in enumerate(prices):
             if price:
                 end: End = ends[0 if sign * price > 0 else 1][k]
                 if end is None:
                     return None
-                total += price * end
-    return total
+                sums[end.denominator] = sums.get(end.denominator, 0) + price * end.numerator
+    return numbers.offset + sum((Fraction(n, d * common) for d, n in sums.items()), Fraction(0))

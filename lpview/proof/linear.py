@@ -266,17 +266,15 @@ def _fraction(value: int, bits: int, near: int) -> int | None:
     """Denominator of the only small fraction near ``value / 2**bits`` (continued fraction)."""
     most = (bits - near) // 2 - GUARD
     a, b = value, 1 << bits
-    p, q, before_p, before_q = 0, 1, 1, 0
-    # Convergents of value / 2**bits, which is below 1.
+    q, before = 1, 0
     while True:
-        close = abs(value * q - (p << bits))
-        if close.bit_length() <= near + q.bit_length():
+        # What is left of the division is the distance itself: |value q - 2**bits p| = a.
+        if a.bit_length() <= near + q.bit_length():
             return q
         if not a:
             return None
         times, rest = divmod(b, a)
-        p, before_p = times * p + before_p, p
-        q, before_q = times * q + before_q, q
+        q, before = times * q + before, q
         if q.bit_length() > most:
             return None
         a, b = rest, a

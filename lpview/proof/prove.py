@@ -16,7 +16,7 @@ from typing import TypeVar
 
 import numpy as np
 
-from lpview.answer import Basis
+from lpview.answer import Basis, LineStatus
 from lpview.basis import SingularBasis, factor_basis
 from lpview.model import LinearProgram, ModelError, Vector, frozen_odd
 from lpview.proof.basis import BasisSolution, solve_basis
@@ -123,7 +123,10 @@ def _without_optimum(
 ) -> Proof:
     """What else it may come to: infeasible, unbounded, or not found out."""
     lp = numbers.lp
-    nearest = work.optimum(integers_of(exact_least_violation(lp)), None)
+    program = integers_of(exact_least_violation(lp))
+    nearest = work.optimum(program, None)
+    if isinstance(nearest, _Failure):
+        nearest = work.optimum(program, excesses_basic(program.lp, lp.n))
     if isinstance(nearest, _Failure):
         return _not_proved(numbers, failure, None, guesses)
     x = nearest.solution.x
@@ -252,6 +255,34 @@ def exact_least_violation(lp: LinearProgram) -> LinearProgram:
     odd = {part: values for part, values in lp.odd.items() if part not in ("A", "c", "offset")}
     odd["A"] = {int(k + shift[k]): v for k, v in lp.odd.get("A", {}).items()}
     return replace(program, odd=frozen_odd(odd))
+
+
+def excesses_basic(program: LinearProgram, n: int) -> Basis:
+    """A feasible basis of a least violation, which needs no solver.
+
+    The ``n`` columns of the model rest; in each row the excess that it then needs is basic,
+    or the row itself. (The excesses of lower sides come first, then those of upper ones.)
+    """
+    low, high = program.lower[:n], program.upper[:n]
+    column = np.full(program.n, LineStatus.LOWER, np.int8)
+    column[:n] = np.where(
+        np.isfinite(low),
+        LineStatus.LOWER,
+        np.where(np.isfinite(high), LineStatus.UPPER, LineStatus.FREE),
+    )
+    resting = np.where(np.isfinite(low), low, np.where(np.isfinite(high), high, 0.0))
+    value = program.A[:, :n] @ resting
+    row = np.full(program.m, LineStatus.BASIC, np.int8)
+    place = n
+    for ends, is_beyond, status in (
+        (program.row_lower, value < program.row_lower, LineStatus.LOWER),
+        (program.row_upper, value > program.row_upper, LineStatus.UPPER),
+    ):
+        sides = np.flatnonzero(np.isfinite(ends))
+        column[place : place + sides.size][is_beyond[sides]] = LineStatus.BASIC
+        row[is_beyond & np.isfinite(ends)] = status
+        place += sides.size
+    return Basis(column, row)
 
 
 def exact_recession(lp: LinearProgram) -> LinearProgram:

@@ -9,7 +9,10 @@ variables of that program, because they carry prices too.
 
 from __future__ import annotations
 
+import math
+from dataclasses import replace
 from fractions import Fraction
+from itertools import pairwise
 
 import numpy as np
 from scipy.sparse import csr_array, hstack, identity
@@ -19,7 +22,7 @@ from lpview.model import LinearProgram, Vector
 from lpview.proof.basis import BasisSolution
 from lpview.proof.integers import End, Integers
 from lpview.proof.results import ExactVector
-from lpview.run import Ask, Method, SolveSettings, Unsolved
+from lpview.run import Ask, Claim, Method, SolveSettings, Unsolved
 
 FAR = 1e15
 """Scaled distances beyond this are no limit to what a violation asks for."""
@@ -42,6 +45,9 @@ def next_basis(
         start=start,
     )
     result = ask(rest, wanted)
+    if isinstance(result, Unsolved) and result.run.claim is Claim.UNKNOWN:
+        # Now and then a run from a given basis ends without a status.
+        result = ask(rest, replace(wanted, start=None))
     if isinstance(result, Unsolved):
         return result
     found = result.answer.basis
@@ -118,14 +124,19 @@ def _row_values(numbers: Integers, x: ExactVector) -> list[Fraction]:
 
 def reduced_costs(numbers: Integers, y: ExactVector) -> list[Fraction]:
     """``c - A'y``, exactly, in the model's own sense."""
+    numerators, denominator = reduced_numerators(numbers, y)
+    return [Fraction(n, denominator) for n in numerators]
+
+
+def reduced_numerators(numbers: Integers, y: ExactVector) -> tuple[list[int], int]:
+    """``c - A'y`` over one denominator, which is that of ``y`` times the scales."""
     lp, A = numbers.lp, numbers.lp.A_by_column
-    order = lp.by_column_order.tolist()
-    reduced = []
-    for j in range(lp.n):
-        total = Fraction(numbers.costs[j], numbers.cost_scale)
-        for k in range(int(A.indptr[j]), int(A.indptr[j + 1])):
-            i = int(A.indices[k])
-            if y.numerators[i]:
-                total -= Fraction(numbers.coefficients[order[k]], numbers.scale[i]) * y[i]
-        reduced.append(total)
-    return reduced
+    common = math.lcm(numbers.cost_scale, *set(numbers.scale))
+    used = [n * (common // s) for n, s in zip(y.numerators, numbers.scale, strict=True)]
+    cost = common // numbers.cost_scale * y.denominator
+    order, indices = lp.by_column_order.tolist(), A.indices.tolist()
+    totals = []
+    for j, (begin, end) in enumerate(pairwise(A.indptr.tolist())):
+        terms = (numbers.coefficients[order[k]] * used[indices[k]] for k in range(begin, end))
+        totals.append(numbers.costs[j] * cost - sum(terms))
+    return totals, common * y.denominator

@@ -15,7 +15,7 @@ from hypothesis import strategies as st
 from lpview.answer import Basis, LineStatus
 from lpview.blocks import read_model
 from lpview.proof.prove import prove
-from lpview.proof.results import ProvedOptimal
+from lpview.proof.results import NotProved, ProvedOptimal
 from lpview.run import Claim, Solved, SolveSettings
 from tests.check.helpers import unsolved
 from tests.prices.draws import any_models, models_with_optimum
@@ -105,8 +105,23 @@ def test_any_model(lp):
 @given(linear_programs(max_rows=4, max_columns=4, nasty_names=False))
 def test_a_model_with_numbers_that_no_double_holds(lp):
     proof = proved(lp)
-    assert said(proof) == truth(lp)
-    assert faults(lp, proof) == []
+    if isinstance(proof, NotProved) and defeats_doubles(lp):
+        assert interval_faults(proof, truth(lp)) == []
+    else:
+        assert said(proof) == truth(lp)
+        assert faults(lp, proof) == []
+
+
+def defeats_doubles(lp) -> bool:
+    """Whether a solver may lose the way: coefficients of 1e19 beside 1, or a model that has an
+    optimum, or a plan, only as long as its numbers are not rounded."""
+    rounded = truth(replace(lp, odd={}))
+    large = np.abs(lp.A.data).max(initial=0.0) > 1e15
+    return bool(large) or kind(rounded) != kind(truth(lp))
+
+
+def kind(value: Fraction | str) -> str:
+    return value if isinstance(value, str) else "optimal"
 
 
 @given(models_with_optimum())

@@ -172,6 +172,23 @@ def test_coefficients_of_very_different_sizes():
     sound(lp, proved(lp))
 
 
+def test_a_solver_that_gives_up_only_from_the_basis_it_is_given():
+    # A coefficient of 1e19 beside 0.01: "Unknown" for the refined model from the first basis.
+    lp = written(
+        "minimize",
+        {"x1": "0", "x2": "0", "x3": "0", "x4": "0.01"},
+        {"r": ("0", {"x2": "1", "x3": "0.01", "x4": "12345678901234567890.123"}, "inf")},
+        {"x3": ("-1", "-1"), "x4": ("0", "0")},
+    )
+    sound(lp, proved(lp))
+
+
+def test_a_solver_that_finds_no_plan_of_a_model_that_always_has_one():
+    # It calls the least violation itself infeasible: 1e19 x + below - above = -1.
+    lp = written("minimize", {"x": "0"}, {"r": ("-1", {"x": "12345678901234567890.123"}, "-1")})
+    assert sound(lp, proved(lp)).contradiction == 1
+
+
 @pytest.mark.parametrize("start", [None, basis([LOWER] * 101, [BASIC])], ids=["solver's", "given"])
 def test_a_row_whose_sum_of_doubles_loses_a_violation(start):
     lp = crumbs()
