@@ -6,6 +6,7 @@ import argparse
 import os
 import sys
 from collections.abc import Sequence
+from difflib import get_close_matches
 from importlib import import_module
 
 from lpview import __version__
@@ -68,6 +69,8 @@ def _with_command(given: list[str]) -> list[str]:
     """``lpview MODEL`` opens the mirror in a terminal, and is the check elsewhere."""
     if not given or given[0] in _COMMANDS or (given[0].startswith("-") and given[0] != "-"):
         return given
+    if not os.path.lexists(given[0]) and get_close_matches(given[0], _COMMANDS, 1, 0.75):
+        return given  # a mistyped command, which the parser refuses with the list of them
     can_open = sys.stdin.isatty() and sys.stdout.isatty() and given[0] != "-"
     return ["open" if can_open else "check", *given]
 
@@ -116,13 +119,17 @@ _WHERE = {
 def _parser() -> argparse.ArgumentParser:
     parser = argparse.ArgumentParser(
         prog="lpview",
+        allow_abbrev=False,
         description="Check, explain and sign off the answer of a linear program.",
         epilog="exit status: 0 done, nothing failed; 1 a check failed; 2 input or usage; "
         "3 no optimum, certified; 4 stopped or not established",
     )
     parser.add_argument("--version", action="version", version=f"lpview {__version__}")
     commands = parser.add_subparsers(dest="command", required=True, metavar="COMMAND")
-    made = {name: commands.add_parser(name, help=text) for name, text in _COMMANDS.items()}
+    made = {
+        name: commands.add_parser(name, help=text, allow_abbrev=False)
+        for name, text in _COMMANDS.items()
+    }
     for name, command in made.items():
         several = name in ("check", "prove")
         command.add_argument(

@@ -221,9 +221,12 @@ def _added(one: Checked, options: argparse.Namespace) -> dict[str, object]:
 
         added.update(price_json.fields(one.priced))
     if options.prove:
+        from lpview.proof.exact import contradicts
         from lpview.report.proof import proof_json
 
         added.update(proof_json(one.proof))
+        if one.proof is not None and contradicts(one.found, one.proof):
+            added["passed"] = None
     return added
 
 

@@ -82,12 +82,14 @@ def verify(options: argparse.Namespace) -> list[int]:
         certificate = Path(options.certificate).read_bytes()
     except OSError as error:
         problem = error.strerror or str(error)
-        sys.stderr.write(f"{options.certificate}: expected a certificate, got: {problem}\n")
+        expected = "expected a certificate that lpview prove writes"
+        sys.stderr.write(f"{options.certificate}: {expected}, got: {problem}\n")
         return [cli.USAGE]
     try:
         verdict = kernel.verify(canonical.encode(), certificate)
     except ValueError as refusal:
-        commands.write(f"{options.certificate}: REFUSED: {refusal}\n", options.output)
+        words = f"REFUSED as a proof of this model: {refusal}"
+        commands.write(f"{options.certificate}: {words}\n", options.output)
         return [cli.FAILED]
     claim, _, value = verdict.rpartition(" ")
     words = f"{claim} {exact_text(Fraction(value))}"

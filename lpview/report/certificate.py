@@ -6,7 +6,7 @@ import numpy as np
 
 from lpview.model import LinearProgram, Vector
 from lpview.outcomes import NoOptimum
-from lpview.repair.certificate import Farkas, Ray
+from lpview.repair.certificate import NOISE, Farkas, Ray
 from lpview.repair.search import Infeasible
 from lpview.report.document import Block, Facts, Sentence, Table
 from lpview.report.names import fitted
@@ -39,7 +39,7 @@ def _infeasible(lp: LinearProgram, certificate: Infeasible, full: bool) -> tuple
         ),
         Sentence(_reach(farkas)),
         _multipliers(lp, farkas, full),
-        Facts((("dual", _DUAL[certificate.dual_infeasible]),)),
+        Facts((("the dual is", _DUAL[certificate.dual_infeasible]),)),
     )
 
 
@@ -55,6 +55,8 @@ def _reach(farkas: Farkas) -> str:
 def _multipliers(lp: LinearProgram, farkas: Farkas, full: bool) -> Table:
     """Lines of the contradiction, the largest multiplier times end first."""
     multiplier = np.concatenate([farkas.y, farkas.z])
+    rounding = np.abs(multiplier) <= NOISE * np.abs(multiplier).max(initial=0.0)
+    multiplier = np.where(rounding, 0.0, multiplier)
     low = np.concatenate([lp.row_lower, lp.lower])
     high = np.concatenate([lp.row_upper, lp.upper])
     named = np.where(multiplier > 0, low, high)
@@ -94,7 +96,8 @@ def _moving(lp: LinearProgram, x: Vector, direction: Vector, full: bool) -> Tabl
     moving = np.flatnonzero(direction)
     order = moving[np.argsort(-np.abs(direction[moving]), kind="stable")]
     shown = order if full else order[:MOST_LINES]
-    title = f"{count(moving.size, 'column')} move along the ray: {shown.size} shown"
+    verb = "moves" if moving.size == 1 else "move"
+    title = f"{count(moving.size, 'column')} {verb} along the ray: {shown.size} shown"
     cells = tuple(
         (fitted(lp.columns[j]), number(x[j]), number(direction[j]), number(lp.c[j]))
         for j in shown.tolist()

@@ -7,7 +7,7 @@ import platform
 from lpview import __version__
 from lpview.model import LinearProgram
 from lpview.outcomes import Examination, Head, NoOptimum, NotEstablished, Optimal, Stopped
-from lpview.proof.exact import with_exact_zeros
+from lpview.proof.exact import contradicts, with_exact_zeros
 from lpview.proof.results import Proof, ProvedOptimal
 from lpview.repair.search import Infeasible
 from lpview.report import answer, certificate
@@ -20,6 +20,10 @@ CAUTION = (
     "A verified optimum is only as good as the model; local rules and licensed practice decide."
 )
 """What every report ends with."""
+
+
+BESIDE_THE_PROOF = "What follows is what the solver answered; by the proof it settles nothing."
+"""Said where a proof says another thing than the solver."""
 
 
 def report(
@@ -42,10 +46,12 @@ def report(
         words, facts = proof_verdict(found, proof, words), proof_facts(found, proof, full)
         if isinstance(found, Optimal) and isinstance(proof, ProvedOptimal):
             found = with_exact_zeros(found, proof)
+    beside = proof is not None and isinstance(found, Optimal) and contradicts(found, proof)
     return (
         Sentence(f"{_title(head)}: {words}", strong=True),
         Sentence("; ".join([shape(head.model), *_notes(head)])),
         *((Facts(facts),) if facts else ()),
+        *((Sentence(BESIDE_THE_PROOF),) if beside else ()),
         *_body(found, full, tables, prices, bool(facts)),
         Facts(provenance(head)),
         Command("reproduce", head.request.command),

@@ -111,7 +111,7 @@ def _facts(curve: Curve) -> tuple[tuple[str, str], ...]:
 def _solved_again(curve: Curve) -> str:
     gaps, largest = len(curve.joints), max(curve.joints, default=0.0)
     text = (
-        f"{count(gaps, 'end')} of pieces, each answer checked; objective off the piece by "
+        f"the model at {count(gaps, 'end')} of pieces, each answer checked; objective off by "
         f"{residual(largest)} scaled at most"
     )
     if not gaps:

@@ -126,7 +126,7 @@ def _dependence(lp: LinearProgram, interior: Interior, full: bool) -> str:
         return f"The {count(equalities, 'equality row')} {_be(equalities)} independent {over}."
     return (
         f"The {count(equalities, 'equality row')} {_be(equalities)} dependent {over}: their rank "
-        f"is {equalities - interior.dependent_rows}. In the dependence stand "
+        f"is {equalities - interior.dependent_rows}. Part of the dependence: "
         f"{_named(lp, interior.dependent, full)}."
     )
 
@@ -143,10 +143,10 @@ def _prices(lp: LinearProgram, interior: Interior, full: bool) -> str:
     if interior.prices_bounded:
         return "So the optimal dual solutions are a bounded set, and every price has limits."
     return (
-        f"So the optimal dual solutions are an unbounded set ({rule}). No limit has the price of "
-        f"{_named(lp, interior.price_unbounded, full)}: to move such a line in one direction, by "
-        "however little, leaves no plan; in a direction that leaves plans its rate is finite and "
-        "may be quoted."
+        f"So the optimal dual solutions are an unbounded set ({rule}). Prices without a limit: "
+        f"{_named(lp, interior.price_unbounded, full)}. To move such a line in at least one "
+        "direction (an equality perhaps in both), by however little, leaves no plan; in a "
+        "direction that leaves plans its rate is finite and may be quoted."
     )
 
 
@@ -167,7 +167,7 @@ def _plans(lp: LinearProgram, interior: Interior, full: bool) -> str:
         why = f" ({free} of them along columns and rows without any limits)"
     return (
         f"So the optimal plans are an unbounded set{why}: they go on for ever without a change of "
-        f"the objective, and no limit has the value of {_named(lp, columns, full)}."
+        f"the objective. Values without a limit: {_named(lp, columns, full)}."
     )
 
 

@@ -13,7 +13,7 @@ from lpview.marks import Flag
 from lpview.model import LinearProgram
 from lpview.outcomes import Examination, Optimal
 from lpview.prices import LinePrices
-from lpview.proof.exact import with_exact_zeros
+from lpview.proof.exact import contradicts, with_exact_zeros
 from lpview.proof.results import Proof, ProvedOptimal
 from lpview.report import asking
 from lpview.report.check import CAUTION, report, verdict
@@ -50,6 +50,8 @@ def ledger_report(
     head, words = found.head, verdict(found)
     if proof is not None:
         words = proof_verdict(found, proof, words)
+        if contradicts(found, proof):
+            return report(found, full, proof=proof)  # a ledger of no plan says nothing
         if isinstance(proof, ProvedOptimal):
             found = with_exact_zeros(found, proof)
     return (

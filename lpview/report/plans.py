@@ -75,7 +75,8 @@ def _table(
         )
         for line in shown
     )
-    title = f"variables that are not the same in all optimal plans: {len(shown)} of {len(moving)}"
+    what = "variables that are not the same in all optimal plans"
+    title = f"{what}: {len(shown)} of {len(moving)} shown"
     header = ("column", "value in the answer", "least", "greatest")
     return Table(title, header, rows, (False, True, True, True))
 

@@ -51,8 +51,11 @@ def proof_facts(found: Examination, proof: Proof, full: bool = False) -> Pairs:
             facts.append(("exact zeros", _zeros(found, proof, full)))
         return tuple(facts)
     if isinstance(proof, ProvedInfeasible):
-        text = f"the multipliers contradict each other by {exact_text(proof.contradiction)}"
-        return (("proof", f"{text}; {_effort(proof.effort)}"),)
+        text = f"the lines contradict each other by {exact_text(proof.contradiction)}"
+        return (
+            ("proof", f"{text}; {_effort(proof.effort)}"),
+            ("exact multipliers", _multipliers(found.head.model, proof, full)),
+        )
     if isinstance(proof, ProvedUnbounded):
         text = f"a feasible plan and a ray of rate {exact_text(proof.rate)}"
         return (("proof", f"{text}; {_effort(proof.effort)}"),)
@@ -71,10 +74,19 @@ def interval_words(proof: NotProved) -> str:
     return f"{words}, if there is any plan at all: no exactly feasible one is known"
 
 
+def _multipliers(lp: LinearProgram, proof: ProvedInfeasible, full: bool) -> str:
+    """Rows and their multipliers; those of bounds follow from them."""
+    rows = [i for i, n in enumerate(proof.y.numerators) if n]
+    shown = rows if full else rows[:MOST_NAMED]
+    words = [f"{line_name(lp, i)} {exact_text(proof.y[i], 12)}" for i in shown]
+    more = f" and {len(rows) - len(shown)} more" if len(rows) > len(shown) else ""
+    return f"{', '.join(words)}{more}" or "none: the bounds contradict the sides by themselves"
+
+
 def _effort(effort: Effort) -> str:
     words = f"numbers of up to {count(effort.bits, 'bit')}"
     if effort.steps == 1:
-        return f"{words}; the first basis is exactly optimal"
+        return f"{words}; the first basis needed no refinement"
     off = [
         f"{name} by {residual(float(size))}"
         for name, size in (

@@ -32,8 +32,8 @@ def redundant_blocks(
         blocks += (
             _sides(lp, "implied by the other lines", implied, full),
             Sentence(
-                "Each implied side can be left out alone; not all at once: of two equal rows "
-                "each is implied by the other."
+                "Each implied side can be left out alone, but perhaps not all at once: of two "
+                "equal rows each is implied by the other."
             ),
         )
     lost = redundant.having(Need.NOT_FOUND)

@@ -60,7 +60,8 @@ def _together(together: Together, sign: float) -> str:
     if math.isnan(together.rate):
         return "What these rows are worth moved together was not found out."
     if math.isinf(together.rate):
-        return "Moved together by any part of these amounts, they leave no plan."
+        them = "it leaves" if len(together.separate) == 1 else "together they leave"
+        return f"Moved by any part of these amounts, {them} no plan."
     change = (
         f"Moved together by t times these amounts, each unit of t {effect(together.rate, sign)}"
     )
@@ -74,13 +75,15 @@ def _together(together: Together, sign: float) -> str:
 def _alone(together: Together, sign: float) -> str:
     """What adding up the one-row rates would have said."""
     rates = [alone.rate for alone in together.separate]
+    if len(rates) == 1:
+        return "It is one row, so there is nothing to add up."
     if not all(map(math.isfinite, rates)):
-        return "Moved alone, one of them leaves no plan, so their prices cannot be added."
+        return "Moved alone, at least one of them leaves no plan, so prices cannot be added."
     added = together.sum_of_separate
     near = 1e-9 * max(1.0, *map(abs, rates))
     if abs(added - together.rate) <= near:
         return "The one-row rates add up to the same."
     return (
-        f"The one-row rates would have said that each unit of t {effect(added, sign)}: one dual "
-        "solution does not attain them all."
+        f"The one-row rates would have said that each unit of t {effect(added, sign)}: no "
+        "single dual solution attains them all."
     )

@@ -75,10 +75,10 @@ def test_implied_equalities():
         "0 (rounding in the multipliers: 0, scaled).",
         "There are no equality rows.",
         "So the optimal dual solutions are an unbounded set (they would be bounded exactly if the "
-        "equality rows were independent and some plan were strictly feasible). No limit has the "
-        "price of 2 lines: row low, row high: to move such a line in one direction, by however "
-        "little, leaves no plan; in a direction that leaves plans its rate is finite and may be "
-        "quoted.",
+        "equality rows were independent and some plan were strictly feasible). Prices without a "
+        "limit: 2 lines: row low, row high. To move such a line in at least one direction (an "
+        "equality perhaps in both), by however little, leaves no plan; in a direction that leaves "
+        "plans its rate is finite and may be quoted.",
         "The dual has a strictly feasible solution.",
         "So the optimal plans are a bounded set.",
         NO_POINT_NEEDED,
@@ -92,7 +92,7 @@ def test_dependent_rows():
     text = said(interior_said(model("minimize", {"x": 1, "y": 2}, rows, {})))
     assert (
         "The 2 equality rows are dependent over the columns that are not fixed: their rank is 1. "
-        "In the dependence stand 2 lines: row one, row two." in text
+        "Part of the dependence: 2 lines: row one, row two." in text
     )
     alone = said(interior_said(model("minimize", {"x": 1, "y": 2}, {"one": rows["one"]}, {})))
     assert "The 1 equality row is independent over the columns that are not fixed." in alone
@@ -112,7 +112,7 @@ def test_plans_that_go_on():
     assert "The dual has no strictly feasible solution." in text
     assert (
         "So the optimal plans are an unbounded set: they go on for ever without a change of the "
-        "objective, and no limit has the value of column y." in text
+        "objective. Values without a limit: column y." in text
     )
 
 
@@ -154,8 +154,8 @@ def test_redundant_rows():
         "4 sides of inequality rows examined: reached by no feasible plan 2, implied by the other "
         "lines 2, needed 0.",
         "The sides that no feasible plan reaches can all be left out at once.",
-        "Each implied side can be left out alone; not all at once: of two equal rows each is "
-        "implied by the other.",
+        "Each implied side can be left out alone, but perhaps not all at once: of two equal rows "
+        "each is implied by the other.",
     ]
     far, implied = tables(blocks)
     assert far.rows == (("far", ">=", "-5", "0", "5"), ("far", "<=", "10", "3", "7"))

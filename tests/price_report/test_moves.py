@@ -27,7 +27,7 @@ def test_one_row_rates_do_not_add_up(glass, capfd):
         "Moved together by t times these amounts, each unit of t improves the objective by 2, "
         "for t up to 46.1538, then the rate changes.",
         "The one-row rates would have said that each unit of t improves the objective by 0.8: "
-        "one dual solution does not attain them all.",
+        "no single dual solution attains them all.",
     ]
     lines = out.splitlines()
     assert [line.split() for line in lines[7:9]] == [
@@ -43,7 +43,7 @@ def test_one_row_alone_adds_up(glass, capfd):
     assert sentences(out) == [
         "Moved together by t times these amounts, each unit of t worsens the objective by 4, "
         "for t up to 150, then no plan is left.",
-        "The one-row rates add up to the same.",
+        "It is one row, so there is nothing to add up.",
     ]
 
 
@@ -54,11 +54,11 @@ def test_rows_that_cannot_move_alone_can_move_together(tmp_path, monkeypatch, ca
     assert sentences(out) == [
         "Moved together by t times these amounts, each unit of t worsens the objective by 1, "
         "however large t is.",
-        "Moved alone, one of them leaves no plan, so their prices cannot be added.",
+        "Moved alone, at least one of them leaves no plan, so prices cannot be added.",
     ]
     status, out, _ = run("prices", loose, "--move", "need=1", "--move", "again=1", capfd=capfd)
     assert status == 0
-    assert sentences(out)[0] == ("Moved together by any part of these amounts, they leave no plan.")
+    assert sentences(out)[0] == ("Moved by any part of these amounts, together they leave no plan.")
 
 
 def test_a_row_without_sides_cannot_move(tmp_path, monkeypatch, capfd):

@@ -83,11 +83,15 @@ def test_a_proof_decides_against_the_solver(
     status, out, _ = run(capsys, "check", model, "--prove")
     assert status == 3
     assert "proved infeasible in exact arithmetic, although the solver says optimal" in out
-    assert "the multipliers contradict each other by 1e-10" in out
+    assert "the lines contradict each other by 1e-10" in out
     status, out, _ = run(capsys, "prove", model, "--format", "json")
     found = json.loads(out)
     assert (status, found["status"]) == (3, "infeasible")
     assert found["proof"]["verdict"] == "proved infeasible"
+    assert found["passed"] is None
+    status, out, _ = run(capsys, "prove", model, "--row", "most")
+    assert "exact multipliers  row least 1, row most -1" in out
+    assert "What follows is what the solver answered; by the proof it settles nothing." in out
 
 
 def test_json_of_a_proved_optimum(capsys: pytest.CaptureFixture[str]) -> None:
@@ -145,7 +149,7 @@ def test_a_changed_certificate_and_another_model_are_refused(
     run(capsys, "prove", str(MODELS / "winter.csv"), "--certificate", str(written))
     status, out, _ = run(capsys, "verify", str(MODELS / "spring.csv"), str(written))
     assert status == 1
-    assert "REFUSED: it is about another model" in out
+    assert "REFUSED as a proof of this model: it is about another model" in out
     written.write_text(written.read_text().replace("heat,20", "heat,21"))
     status, out, _ = run(capsys, "verify", str(MODELS / "winter.csv"), str(written))
     assert (status, "REFUSED" in out) == (1, True)
@@ -156,7 +160,9 @@ def test_a_missing_certificate_is_a_mistake_of_use(
 ) -> None:
     status, out, err = run(capsys, "verify", str(MODELS / "winter.csv"), str(tmp_path / "no.txt"))
     assert (status, out) == (2, "")
-    assert err.endswith("no.txt: expected a certificate, got: No such file or directory\n")
+    assert err.endswith(
+        "no.txt: expected a certificate that lpview prove writes, got: No such file or directory\n"
+    )
 
 
 def test_a_certificate_needs_a_proof_and_one_model(

@@ -97,7 +97,7 @@ def test_a_proof_of_something_else_is_said_loudly() -> None:
         await proved(pilot, screen)
         assert isinstance(screen.proof, ProvedInfeasible)
         assert "BUT PROVED OTHERWISE" in first_line(screen)
-        assert "contradict each other by 1e-10" in message(screen)
+        assert "lines contradict each other by 1e-10" in message(screen)
 
     drive(NEARLY, script)
 
