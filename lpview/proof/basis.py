@@ -15,6 +15,7 @@ import math
 from collections.abc import Callable
 from dataclasses import dataclass
 from fractions import Fraction
+from typing import Any
 
 import numpy as np
 from numpy.typing import NDArray
@@ -32,6 +33,11 @@ Mask = NDArray[np.bool_]
 ROUNDING = 2.0**-52
 """A sum of doubles is trusted to this times the sum of its terms' sizes, for each term and a
 few more: twice the worst that can happen."""
+
+
+VANISHING, TINY = 1e-290, 1e-280
+"""Added to factors and to sums before `ROUNDING`: far more than what underflow can lose, and
+what is so small is worked out in integers."""
 
 
 @dataclass(frozen=True, eq=False)
@@ -166,8 +172,16 @@ def _dual_values(
 
 
 def doubles(numbers: ExactVector) -> Vector:
-    """Each entry as the nearest double."""
-    return np.array([n / numbers.denominator for n in numbers.numerators])
+    """Each entry as the nearest double, infinite where none is near."""
+    return np.array([quotient(n, numbers.denominator) for n in numbers.numerators])
+
+
+def quotient(top: int, bottom: int) -> float:
+    """A fraction as a double, infinite where none is near; ``bottom`` is positive."""
+    try:
+        return top / bottom
+    except OverflowError:
+        return math.inf if top > 0 else -math.inf
 
 
 def _values(
@@ -176,10 +190,11 @@ def _values(
     """All values as doubles; exactly which are at an end, and how far some are outside."""
     lp, A = numbers.lp, numbers.lp.A
     plan = doubles(x)
-    rows = A @ plan
+    with np.errstate(over="ignore", invalid="ignore"):
+        rows = A @ plan
+        size = _sizes(abs(A), plan, np.diff(A.indptr))
     outside: dict[int, Fraction] = {}
     zero = np.concatenate([_at_end(basis.row), _at_end(basis.column)])
-    size = (abs(A) @ np.abs(plan)) * (np.diff(A.indptr) + 8)
     near = _near(rows, size, lp.row_lower, lp.row_upper)
     for i in np.flatnonzero(near & _loose(basis.row, lp.row_lower, lp.row_upper)).tolist():
         begin, end = int(A.indptr[i]), int(A.indptr[i + 1])
@@ -189,7 +204,7 @@ def _values(
         low, high = numbers.row_ends[0][i], numbers.row_ends[1][i]
         zero[i] = value in (low, high)
         _note(outside, i, value, low, high)
-    near = _near(plan, np.abs(plan) * 8, lp.lower, lp.upper)
+    near = _near(plan, np.abs(plan) * 8 + TINY, lp.lower, lp.upper)
     for j in np.flatnonzero(near & _loose(basis.column, lp.lower, lp.upper)).tolist():
         low, high = numbers.column_ends[0][j], numbers.column_ends[1][j]
         zero[lp.m + j] = x[j] in (low, high)
@@ -208,11 +223,18 @@ def _at_end(statuses: Statuses) -> Mask:
     return held
 
 
+def _sizes(A: Any, values: Vector, counts: NDArray[np.integer]) -> Vector:
+    """What `ROUNDING` times bounds the error of ``A @ values`` by, underflow included."""
+    sizes: Vector = (A @ (np.abs(values) + VANISHING)) * (counts + 8) + TINY
+    return sizes
+
+
 def _near(value: Vector, size: Vector, low: Vector, high: Vector) -> NDArray[np.bool_]:
     """Values that are not plainly inside; a nan counts as not."""
     ends = np.maximum(_finite(low), _finite(high))
-    margin = ROUNDING * np.maximum(size, 8 * ends)
-    inside: NDArray[np.bool_] = (value - low > margin) & (high - value > margin)
+    with np.errstate(over="ignore", invalid="ignore"):
+        margin = ROUNDING * np.maximum(size, 8 * ends)
+        inside: NDArray[np.bool_] = (value - low > margin) & (high - value > margin)
     return ~inside
 
 
@@ -233,8 +255,10 @@ def _prices(
     """All prices as doubles; exactly which are 0, and those of a wrong sign."""
     lp, A = numbers.lp, numbers.lp.A_by_column
     dual = doubles(y)
-    reduced = lp.c - lp.A.T @ dual
-    size = (np.abs(lp.c) + abs(lp.A).T @ np.abs(dual)) * (np.diff(A.indptr) + 8)
+    counts = np.diff(A.indptr)
+    with np.errstate(over="ignore", invalid="ignore"):
+        reduced = lp.c - lp.A.T @ dual
+        size = np.abs(lp.c) * (counts + 8) + _sizes(abs(lp.A).T, dual, counts)
     basic = basis.column == LineStatus.BASIC
     zero = np.concatenate([np.array([n == 0 for n in y.numerators], dtype=bool), basic])
     wrong: dict[int, Fraction] = {}
@@ -243,9 +267,10 @@ def _prices(
         allowed = lp.is_equality[i] or _is_allowed(sign * y.numerators[i], int(basis.row[i]))
         if not allowed:
             wrong[i] = y[i]
+    margin = ROUNDING * size
     toward = sign * reduced * np.where(basis.column == LineStatus.UPPER, -1.0, 1.0)
-    plain = (toward > ROUNDING * size) & (basis.column != LineStatus.FREE)
-    plain |= lp.is_fixed & (np.abs(reduced) > ROUNDING * size)
+    plain = (toward > margin) & (basis.column != LineStatus.FREE)
+    plain |= lp.is_fixed & (np.abs(reduced) > margin)
     for j in np.flatnonzero(~basic & ~plain).tolist():
         begin, end = int(A.indptr[j]), int(A.indptr[j + 1])
         total = numbers.costs[j] * (scaled.denominator // numbers.cost_scale)
@@ -254,7 +279,7 @@ def _prices(
             total -= numbers.coefficients[k] * scaled.numerators[i]
         zero[lp.m + j] = total == 0
         price = Fraction(total, scaled.denominator)
-        reduced[j] = float(price)
+        reduced[j] = quotient(total, scaled.denominator)
         if not lp.is_fixed[j] and not _is_allowed(sign * total, int(basis.column[j])):
             wrong[lp.m + j] = price
     reduced[basic] = 0.0

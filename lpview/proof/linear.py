@@ -174,7 +174,7 @@ class _Lifting:
     def step(self) -> bool:
         """Add digits; true where nothing is left to be added."""
         shift = max(0, self._size - 900)
-        guess = self._approximate((self._residual >> shift).astype(float))
+        guess = self._guess(shift)
         largest = float(np.abs(guess).max())
         if not 0 < largest < math.inf:
             raise NotSolvedError("its floating factors give no numbers")
@@ -194,6 +194,11 @@ class _Lifting:
         self.steps += 1
         self.is_exact = size == 0
         return self.is_exact
+
+    def _guess(self, shift: int) -> Vector:
+        # What no double holds is seen to be of no use right after.
+        with np.errstate(over="ignore", invalid="ignore"):
+            return self._approximate((self._residual >> shift).astype(float))
 
     def _product(self, digits: np.ndarray) -> np.ndarray:
         wide = object in (self._residual.dtype, digits.dtype)
@@ -216,7 +221,7 @@ class _Lifting:
             common = math.gcd(1 << self.bits, *x)
             return [v // common for v in x], (1 << self.bits) // common
         shift = max(0, self._size - 900)
-        left = self._approximate((self._residual >> shift).astype(float))
+        left = self._guess(shift)
         error = max(0, math.frexp(float(np.abs(left).max()))[1] + shift) + 2
         return _recognized(x, self.bits, error)
 

@@ -19,7 +19,7 @@ from scipy.sparse import csr_array, hstack, identity
 
 from lpview.answer import Basis, LineStatus
 from lpview.model import LinearProgram, Vector
-from lpview.proof.basis import BasisSolution
+from lpview.proof.basis import BasisSolution, quotient
 from lpview.proof.integers import End, Integers
 from lpview.proof.results import ExactVector
 from lpview.run import Ask, Claim, Method, SolveSettings, Unsolved
@@ -78,7 +78,7 @@ def _rest(numbers: Integers, solution: BasisSolution) -> LinearProgram:
         sense=lp.sense,
         columns=tuple(map(str, range(lp.n + lp.m))),
         rows=lp.rows,
-        c=np.array([float(p * by_price) for p in prices]),
+        c=np.array([_double(p * by_price) for p in prices]),
         A=A,
         row_lower=np.zeros(lp.m),
         row_upper=np.zeros(lp.m),
@@ -105,10 +105,7 @@ def _distances(ends: list[End], values: list[Fraction], by: int, none: float) ->
 
 
 def _double(value: Fraction) -> float:
-    try:
-        return float(value)
-    except OverflowError:
-        return float("inf") if value > 0 else float("-inf")
+    return quotient(value.numerator, value.denominator)
 
 
 def _row_values(numbers: Integers, x: ExactVector) -> list[Fraction]:
