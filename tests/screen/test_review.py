@@ -108,7 +108,7 @@ def test_from_a_price_that_is_not_unique_to_its_value_curve(season):
         terminal.press("escape")
         terminal.wait_for("CONSTRAINT  1 of")
         terminal.press("+", "enter")
-        terminal.wait_for("The one-row rates add up to the same.")
+        terminal.wait_for("It is one row, so there is nothing to add up.")
         terminal.press("escape")
         terminal.wait_for("CONSTRAINT  1 of")
         terminal.press("q")
