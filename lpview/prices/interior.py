@@ -23,12 +23,12 @@ from dataclasses import dataclass
 
 import numpy as np
 
-from lpview.basis import SingularBasis, factor_basis
 from lpview.kkt import measure
 from lpview.model import Vector
 from lpview.outcomes import Optimal
+from lpview.prices.begin import at_basis
 from lpview.prices.cone import Ask, Widest, cone, widest
-from lpview.prices.lines import Lines, Mask, lines_of
+from lpview.prices.lines import Lines, Mask
 from lpview.prices.margin import Margin, largest_margin, margin_at
 from lpview.prices.results import NoPrices
 from lpview.prices.tableau import Tableau
@@ -109,15 +109,10 @@ def find_interior(found: Optimal, ask: Ask) -> Interior | NoPrices:
     ask
         Solves up to three auxiliary models; what it returns is measured.
     """
-    if not found.passed:
-        return NoPrices("the answer failed its check")
-    basis = found.answer.basis
-    if basis is None:
-        return NoPrices("the answer comes without a basis (leave --no-crossover out)")
-    matrix = factor_basis(found.head.model, basis)
-    if isinstance(matrix, SingularBasis):
-        return NoPrices(f"the basis {matrix.reason}")
-    lines = lines_of(found.head.model, found.measurement, found.marks, basis)
+    begun = at_basis(found)
+    if isinstance(begun, NoPrices):
+        return begun
+    lines, matrix = begun
     try:
         return _interior(lines, Tableau(lines, matrix), ask)
     except NotRepresentableError as error:

@@ -21,8 +21,9 @@ import numpy as np
 
 from lpview.outcomes import Optimal
 from lpview.priced import StoppedEarlyError
+from lpview.prices.begin import verified_lines
 from lpview.prices.intervals import ZERO
-from lpview.prices.lines import Lines, lines_of
+from lpview.prices.lines import Lines
 from lpview.prices.results import NoPrices
 from lpview.run import Claim
 from lpview.scaling import NotRepresentableError
@@ -115,12 +116,9 @@ def redundant_sides(
     rows
         Rows to examine; all of them unless given.
     """
-    if not found.passed:
-        return NoPrices("the answer failed its check")
-    if found.answer.basis is None:
-        return NoPrices("the answer comes without a basis (leave --no-crossover out)")
-    lp = found.head.model
-    lines = lines_of(lp, found.measurement, found.marks, found.answer.basis)
+    lines = verified_lines(found)
+    if isinstance(lines, NoPrices):
+        return lines
     questions = inequality_sides(found, rows)
     sides: list[RowSide] = []
     stopped = None

@@ -8,11 +8,11 @@ from types import MappingProxyType
 
 import numpy as np
 
-from lpview.basis import SingularBasis, factor_basis
 from lpview.model import Vector
 from lpview.outcomes import Optimal
+from lpview.prices.begin import at_basis
 from lpview.prices.intervals import GREATEST, LEAST, ZERO, Face
-from lpview.prices.lines import Lines, Mask, lines_of
+from lpview.prices.lines import Lines, Mask
 from lpview.prices.partition import GivenUpError, Partition, partition
 from lpview.prices.polyhedron import price_shape, value_shape
 from lpview.prices.ranges import Ranges
@@ -211,15 +211,10 @@ def work_out(found: Optimal, warm: WarmMaker) -> Prices | NoPrices:
         Opens models that stay open; what it says of a vertex or a ray is used as such,
         and each can be checked (`Prices.price_at`, `Prices.plan_at`).
     """
-    if not found.passed:
-        return NoPrices("the answer failed its check")
-    basis = found.answer.basis
-    if basis is None:
-        return NoPrices("the answer comes without a basis (leave --no-crossover out)")
-    matrix = factor_basis(found.head.model, basis)
-    if isinstance(matrix, SingularBasis):
-        return NoPrices(f"the basis {matrix.reason}")
-    lines = lines_of(found.head.model, found.measurement, found.marks, basis)
+    begun = at_basis(found)
+    if isinstance(begun, NoPrices):
+        return begun
+    lines, matrix = begun
     tableau = Tableau(lines, matrix)
     try:
         return Prices(lines, tableau, partition(lines, tableau, warm), warm)
