@@ -29,6 +29,9 @@ POSITIVE = 1e-7
 RANK = 1e-9
 """Diagonal entries of a factorization below this times the largest count as zero."""
 
+STILL = 1e-9
+"""Entries of a generic direction below this times its largest one do not move."""
+
 
 class GivenUpError(Exception):
     """The partition could not be found; nothing about it can be said."""
@@ -180,7 +183,7 @@ def _null_vectors(K: Vector) -> tuple[Vector, Vector, int]:
 
 def _nonzero(vectors: Vector, any_left: bool) -> Vector:
     largest = np.abs(vectors).max(axis=0, initial=0.0)
-    return np.where(np.abs(vectors) <= 1e-9 * largest, 0.0, vectors) if any_left else vectors * 0.0
+    return np.where(np.abs(vectors) <= STILL * largest, 0.0, vectors) if any_left else vectors * 0.0
 
 
 def _unfold(lines: Lines, index: Index, own: Vector, direction: object) -> Mask:
@@ -191,5 +194,5 @@ def _unfold(lines: Lines, index: Index, own: Vector, direction: object) -> Mask:
         return np.zeros(lines.value.size, bool)
     moved = direction(whole)  # type: ignore[operator]
     largest = np.abs(moved).max(axis=0)
-    moves: Mask = (np.abs(moved) > 1e-9 * largest).any(axis=1)
+    moves: Mask = (np.abs(moved) > STILL * largest).any(axis=1)
     return moves

@@ -106,10 +106,6 @@ class Ratios:
 
     distance: Vector
     """To the first follower's limit, shape ``(2, k)``; ``inf`` without one."""
-    stopper: Index
-    """That follower, -1 without one."""
-    upward: Mask
-    """Whether it rises there."""
     is_end: Mask
     """Whether the rate is proved to change there, or the move to end."""
     is_last: Mask
@@ -149,7 +145,7 @@ def ratios(mirror: Mirror, moved: Index, clean: tuple[Mask, Mask]) -> Ratios:
     is_last = _unpushed(mirror, stopper, upward, (mirror.rise, mirror.fall))
     passes = (upward & mirror.passes_up[stopper]) | (~upward & mirror.passes_down[stopper])
     pushed = (stopper >= 0) & ~_unpushed(mirror, stopper, upward, clean)
-    return Ratios(distance, stopper, upward, is_end, is_last & ~passes, alone & (passes | pushed))
+    return Ratios(distance, is_end, is_last & ~passes, alone & (passes | pushed))
 
 
 def clean_helpers(mirror: Mirror) -> tuple[Mask, Mask]:

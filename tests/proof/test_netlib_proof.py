@@ -20,42 +20,13 @@ from lpview.blocks import read_model
 from lpview.proof.prove import prove
 from lpview.proof.results import ProvedOptimal
 from lpview.run import SolveSettings
+from tests.check.test_netlib import COLLECTION, FOLDER, model_files
 from tests.proof.test_prove_check import ask, faults, proved, said, solver_basis
 
-FOLDER = Path(__file__).parents[1] / "data" / "netlib"
-
-VALUES = {
-    "adlittle": "225494.96316238038228101176621492",
-    "afiro": "-464.75314285714285714285714285714",
-    "beaconfd": "33592.4858072",
-    "blend": "-30.812149845828220173774356124984",
-    "brandy": "1518.5098964881283835426751550618",
-    "israel": "-896644.82186304572966200464196045",
-    "recipe": "-266.616",
-    "sc205": "-52.202061211707248062628010857689",
-    "sc50a": "-64.575077058564509026860413914575",
-    "sc50b": "-70",
-    "scagr25": "-14753433.060768523167790925075974",
-    "sctap1": "1412.25",
-    "share2b": "-415.73224074141948654519910873841",
-    "stocfor1": "-41131.976219436406065682760731514",
-}
-"""Exact optimal values of the Netlib problems, published as a list of 32 digits:
-``check/testset/irpaper-opt.solu`` of the repository scipopt/soplex, the reference values of
-Gleixner, Steffy and Wolter 2016, "Iterative refinement for linear programming", INFORMS
-Journal on Computing 28: 449-464."""
-
-FRACTIONS = {
-    "afiro": "-406659/875",
-    "beaconfd": "41990607259/1250000",
-    "recipe": "-33327/125",
-    "sc205": "-5064062500/97008861",
-    "sc50a": "-146650/2271",
-    "sc50b": "-70",
-    "sctap1": "5649/4",
-}
-"""The same optima as fractions, recognized from more than 70 decimals that were computed
-apart from this package, with other solvers' bases."""
+with (FOLDER / "values.csv").open(encoding="utf-8", newline="") as table:
+    SHIPPED = {row["file"]: row for row in csv.DictReader(table)}
+"""Optimal values of the shipped models, as published and as fractions; the README beside the
+file names their sources."""
 
 MEASURED = {
     "fit1d": "-3067162892993/335341800",
@@ -70,8 +41,9 @@ MEASURED = {
     "ship12l": "979880248232955004331/666500000000000",
     "truss": "30841542443761183218347/67219871835168000",
 }
-"""Likewise, of models that are not shipped; fit1d and fit1p are duals, and so are fit2d and
-fit2p."""
+"""Optima of models that are not shipped, as fractions recognized from more than 70 decimals
+that were computed apart from this package, with other solvers' bases; fit1d and fit1p are
+duals, and so are fit2d and fit2p."""
 
 
 def digits(value: Fraction) -> Decimal:
@@ -84,52 +56,47 @@ def agrees(value: Fraction, published: str) -> bool:
 
 
 def test_agreement_is_to_the_last_digit():
-    value = Fraction(FRACTIONS["sc50a"])
-    assert agrees(value, VALUES["sc50a"])
-    assert not agrees(value, VALUES["sc50a"][:-1] + "4")
-    assert not agrees(value, VALUES["sc50a"][:-1])
+    value, published = (
+        Fraction(SHIPPED["sc50a"]["exact_fraction"]),
+        SHIPPED["sc50a"]["optimal_value"],
+    )
+    assert agrees(value, published)
+    assert not agrees(value, published[:-1] + "4")
+    assert not agrees(value, published[:-1])
 
 
 def test_every_shipped_model_has_a_published_value():
-    assert {path.stem for path in FOLDER.glob("*.csv")} - {"values"} == set(VALUES)
+    assert {path.stem for path in model_files(FOLDER)} == set(SHIPPED)
 
 
-@pytest.mark.parametrize("name", VALUES)
+@pytest.mark.parametrize("name", SHIPPED)
 def test_a_shipped_model(name):
     lp = read_model(FOLDER / f"{name}.csv").model
     proof = proved(lp, solver_basis(lp))
     assert isinstance(proof, ProvedOptimal)
-    assert agrees(proof.objective, VALUES[name])
-    if name in FRACTIONS:
-        assert proof.objective == Fraction(FRACTIONS[name])
+    assert agrees(proof.objective, SHIPPED[name]["optimal_value"])
+    assert proof.objective == Fraction(SHIPPED[name]["exact_fraction"])
     assert faults(lp, proof) == []
     assert proof.effort.steps == 1
 
 
-def collection() -> Path:
-    """The folder of the slow test, which is skipped without one."""
-    if "LPVIEW_NETLIB" not in os.environ:
-        pytest.skip("LPVIEW_NETLIB names no folder of models")
-    return Path(os.environ["LPVIEW_NETLIB"])
-
-
 def published(folder: Path) -> dict[str, str]:
-    """Optimal values by file, as the second column of a table writes them."""
+    """Optimal values by file, as the second column of a table writes them.
+
+    The table is in the folder, beside it, or named by ``LPVIEW_NETLIB_VALUES``.
+    """
     named = os.environ.get("LPVIEW_NETLIB_VALUES")
     tables = [*folder.glob("*values.csv"), *folder.parent.glob("*-values.csv")]
-    tables = [Path(named)] if named else tables
-    if not tables:
-        pytest.skip(f"no values beside {folder}, and LPVIEW_NETLIB_VALUES names none")
-    with tables[0].open(encoding="utf-8", newline="") as lines:
+    (first, *_) = [Path(named)] if named else tables
+    with first.open(encoding="utf-8", newline="") as lines:
         return {row[0]: row[1] for row in list(csv.reader(lines))[1:]}
 
 
 @pytest.mark.slow
 @pytest.mark.parametrize("feasibility", [1e-9, 1e-7])
 def test_a_collection_proved(feasibility, capsys):
-    folder = collection()
-    values, wrong, steps = published(folder), [], {}
-    paths = [path for path in sorted(folder.glob("*.csv")) if not path.stem.endswith("values")]
+    values, wrong, steps = published(COLLECTION), [], {}
+    paths = model_files(COLLECTION)
     for path in paths:
         lp = read_model(path).model
         basis = solver_basis(lp, feasibility=feasibility)
