@@ -16,12 +16,13 @@ from pathlib import Path
 from typing import TYPE_CHECKING
 
 from lpview import cli
-from lpview.blocks import InputError, Reading, read_model, read_model_bytes, write_blocks
+from lpview.blocks import InputError, read_model, read_model_bytes, write_blocks
 from lpview.blocks.mistakes import Mistake, quoted
 from lpview.decimals import number_text
 from lpview.examination import examine
 from lpview.model import LinearProgram
 from lpview.outcomes import Examination, NoOptimum, Optimal, Request, SecondRoute
+from lpview.reading import Reading
 from lpview.report.document import Document, Pairs
 from lpview.run import Method, SolveSettings, Watch
 from lpview.scaling import NotRepresentableError

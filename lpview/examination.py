@@ -22,7 +22,7 @@ from lpview.basis import (
     import_factorization,
     matrix_prices,
 )
-from lpview.blocks import Reading, write_blocks
+from lpview.blocks import write_blocks
 from lpview.decimals import PRINTED_DIGITS, printed
 from lpview.dual import build_dual, original_answer
 from lpview.kkt import Condition, FileNumbers, Measurement, measure
@@ -45,6 +45,7 @@ from lpview.outcomes import (
     Stopped,
 )
 from lpview.polish import Origin, OwnNumbers, Polished, is_rounding, polished, worst_failure
+from lpview.reading import Reading
 from lpview.repair.search import Nothing, find_certificate
 from lpview.run import Claim, Solved, Solver, SolveSettings, Unsolved, Watch
 from lpview.scaling import NotRepresentableError
@@ -77,7 +78,7 @@ def examine(
     prepared = Meanwhile(lambda: _prepared(lp))
     result = ask(lp, request.solve)
     sha256, numbers = prepared.result()
-    head = Head(lp, reading.notes, sha256, request, result.run)
+    head = Head(lp, reading.notes, sha256, request, result.run, reading.labels)
     if isinstance(result, Solved):
         return _check(head, result.answer, ask, numbers)
     if result.run.claim.is_stop:

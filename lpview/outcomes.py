@@ -11,11 +11,12 @@ from dataclasses import dataclass, field
 
 from lpview.answer import Answer
 from lpview.basis import BasisPrices, PriceDifference
-from lpview.blocks import Notes
 from lpview.kkt import Measurement
+from lpview.labels import NO_LABELS, Labels
 from lpview.marks import Marks
 from lpview.model import LinearProgram
 from lpview.polish import Origin
+from lpview.reading import Notes
 from lpview.repair.search import Infeasible, Unbounded
 from lpview.run import SolverRun, SolveSettings
 from lpview.verdict import Verdict
@@ -64,6 +65,8 @@ class Head:
     """What was asked for."""
     run: SolverRun
     """The solver's run and claim."""
+    labels: Labels = NO_LABELS
+    """Labels, units and groups of the lines."""
 
 
 @dataclass(frozen=True)

@@ -14,12 +14,13 @@ from dataclasses import dataclass, replace
 
 import numpy as np
 
-from lpview.blocks import Notes, write_blocks
+from lpview.blocks import write_blocks
 from lpview.decimals import number_text
 from lpview.dual import DualProgram, build_dual, dual_answer
 from lpview.examination import check_answer
 from lpview.kkt import Side
 from lpview.outcomes import Head, Optimal, Request
+from lpview.reading import Notes
 from lpview.sides import NOWHERE, Index
 
 

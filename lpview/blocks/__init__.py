@@ -12,14 +12,12 @@ looks like a block line, since a data line has more cells than a block line.
 
 from lpview.blocks.mistakes import InputError, Mistake
 from lpview.blocks.names import name_problem
-from lpview.blocks.reader import Notes, Reading, read_model, read_model_bytes
+from lpview.blocks.reader import read_model, read_model_bytes
 from lpview.blocks.writer import write_blocks, write_values
 
 __all__ = [
     "InputError",
     "Mistake",
-    "Notes",
-    "Reading",
     "name_problem",
     "read_model",
     "read_model_bytes",

@@ -20,33 +20,7 @@ from lpview.blocks.objective import Objective, read_objective, read_offset
 from lpview.blocks.source import Source, from_bytes, read_path
 from lpview.blocks.structure import Block, read_blocks
 from lpview.model import LinearProgram, frozen_odd
-
-
-@dataclass(frozen=True)
-class Notes:
-    """What is not wrong with a file, but every report of it states."""
-
-    empty_coefficients: int
-    """Empty cells of wide ``[A]`` blocks, read as 0."""
-    empty_costs: int
-    """Empty costs, read as 0."""
-    rows_without_coefficients: tuple[str, ...]
-    """Rows in which no coefficient differs from 0."""
-    names_alike: tuple[tuple[str, str], ...]
-    """Pairs of columns and pairs of rows whose names differ only in case or in
-    blanks inside them."""
-    most_decimals: Mapping[str, int]
-    """Digits after the decimal mark, at most, by name of the block."""
-
-
-@dataclass(frozen=True)
-class Reading:
-    """A model that was read, with what there is to say about it."""
-
-    model: LinearProgram
-    """The linear program."""
-    notes: Notes
-    """Counts that every report states."""
+from lpview.reading import Notes, Reading
 
 
 def read_model(source: str | Path) -> Reading:

@@ -7,7 +7,6 @@ import time
 from collections.abc import Sequence
 from dataclasses import replace
 
-from lpview.blocks import Reading
 from lpview.examination import check_answer, examine
 from lpview.model import LinearProgram
 from lpview.outcomes import Examination, Optimal, SecondRoute, Stopped
@@ -15,6 +14,7 @@ from lpview.prices.curve import Beyond, Curve, NoCurve, Piece, Recorded, Why, is
 from lpview.prices.number import Number
 from lpview.prices.walk import Ask, Place, Walk
 from lpview.prices.work import Prices
+from lpview.reading import Reading
 from lpview.run import Claim, Solved, Solver, Watch
 from lpview.warm import WarmMaker
 
@@ -98,7 +98,7 @@ def asking(found: Optimal, solve: Solver, watch: Watch, deadline: float | None =
             return check_answer(replace(head, model=lp, run=result.run), result.answer)
         # Whatever the claim, it needs a certificate.
         request = replace(head.request, solve=settings, second_route=SecondRoute.NEVER)
-        return examine(Reading(lp, head.notes), request, solve, watch)
+        return examine(Reading(lp, head.notes, head.labels), request, solve, watch)
 
     return ask
 

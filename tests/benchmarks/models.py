@@ -12,12 +12,12 @@ import numpy as np
 from scipy.sparse import csr_array
 
 from lpview.answer import Answer, Basis, LineStatus
-from lpview.blocks import Notes
 from lpview.kkt import measure
 from lpview.marks import mark
 from lpview.model import LinearProgram, Sense, Vector
 from lpview.outcomes import DualNotSolved, Head, NoBasisRoute, Optimal, Request, Rounded
 from lpview.polish import OwnNumbers
+from lpview.reading import Notes
 from lpview.run import Claim, SolverRun
 from lpview.verdict import judge
 

@@ -30,11 +30,12 @@ from pathlib import Path
 
 import numpy as np
 
-from lpview.blocks import Reading, read_model
+from lpview.blocks import read_model
 from lpview.examination import examine
 from lpview.model import LinearProgram
 from lpview.outcomes import Optimal, Request, SecondRoute
 from lpview.prices import NoPrices, Prices, work_out
+from lpview.reading import Reading
 from lpview.solver import solve, warm_model
 
 SMALLEST = 20

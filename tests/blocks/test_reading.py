@@ -8,8 +8,9 @@ from pathlib import Path
 import numpy as np
 import pytest
 
-from lpview.blocks import InputError, Reading, read_model, read_model_bytes
+from lpview.blocks import InputError, read_model, read_model_bytes
 from lpview.model import Sense
+from lpview.reading import Reading
 
 INF = np.inf
 

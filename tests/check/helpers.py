@@ -8,10 +8,11 @@ from pathlib import Path
 import numpy as np
 
 from lpview.answer import Answer
-from lpview.blocks import Notes, Reading, write_blocks
+from lpview.blocks import write_blocks
 from lpview.examination import examine
 from lpview.kkt import measure
 from lpview.outcomes import Request, SecondRoute
+from lpview.reading import Notes, Reading
 from lpview.run import Claim, Solved, SolverRun, Unsolved
 from lpview.solver import solve
 from lpview.verdict import judge

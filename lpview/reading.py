@@ -1,0 +1,46 @@
+"""A model as it arrived: the linear program, and what every report says about the reading."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from dataclasses import dataclass
+
+from lpview.labels import NO_LABELS, Labels
+from lpview.model import LinearProgram
+
+
+@dataclass(frozen=True)
+class Notes:
+    """What is not wrong with an input, but every report of it states."""
+
+    empty_coefficients: int
+    """Empty cells of wide ``[A]`` blocks, read as 0."""
+    empty_costs: int
+    """Empty costs, read as 0."""
+    rows_without_coefficients: tuple[str, ...]
+    """Rows in which no coefficient differs from 0."""
+    names_alike: tuple[tuple[str, str], ...]
+    """Pairs of columns and pairs of rows whose names differ only in case or in
+    blanks inside them."""
+    most_decimals: Mapping[str, int]
+    """Digits after the decimal mark, at most, by name of the block."""
+    remarks: tuple[str, ...] = ()
+    """Anything else that reading noticed or was told to do, each in words that go on
+    after "noticed while reading:"."""
+    scope: str = ""
+    """What stands in place of the model's integer columns, in words for the first line of
+    a report: its linear relaxation, or fixed values; empty for a linear program as it is."""
+
+
+@dataclass(frozen=True)
+class Reading:
+    """A model that was read, with what there is to say about it."""
+
+    model: LinearProgram
+    """The linear program; integer columns are in it as if they were none."""
+    notes: Notes
+    """What every report states."""
+    labels: Labels = NO_LABELS
+    """Labels, units and groups that came with the model."""
+    integers: tuple[int, ...] = ()
+    """Columns, by index, whose values the file wants to be whole numbers."""
