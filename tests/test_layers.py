@@ -163,12 +163,15 @@ def test_an_examination_takes_its_solver_as_an_argument() -> None:
     assert not {name for name in reach("lpview.examination") if within(name, "lpview.solver")}
 
 
-def test_blocks_know_the_model_and_its_numbers_only() -> None:
+def test_blocks_know_what_they_read_only() -> None:
     own = {
         name for module in IMPORTS if within(module, "lpview.blocks") for name in IMPORTS[module]
     }
     ours = {name for name in own if within(name, "lpview")}
-    allowed = ("lpview.blocks", "lpview.model", "lpview.decimals")
+    allowed = (
+        *("lpview.blocks", "lpview.model", "lpview.decimals"),
+        *("lpview.reading", "lpview.labels", "lpview.given"),
+    )
     assert not {name for name in ours if not within(name, *allowed)}
 
 
