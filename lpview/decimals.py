@@ -20,6 +20,9 @@ from lpview.model import LinearProgram, Vector
 LONGEST_EXPONENT = 400
 """Decimal exponents beyond this are refused before any big number is built."""
 
+NO_NUMBER = "a number"
+"""What is expected of a text that is written as no number is."""
+
 _NUMBER = re.compile(r"[+-]?(\d+\.?\d*|\.\d+)([eE][+-]?\d+)?", re.ASCII)
 _FRACTION = re.compile(r"[+-]?\d+/\d+", re.ASCII)
 
@@ -42,7 +45,7 @@ def parse(text: str) -> tuple[float, Fraction | None]:
     else:
         match = _NUMBER.fullmatch(text)
         if match is None:
-            raise NumberError("a number")
+            raise NumberError(NO_NUMBER)
         value = float(text) + 0.0
         if match[2] is None and len(text) <= 15:
             return value, None  # 15 digits always survive a double

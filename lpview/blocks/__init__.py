@@ -12,15 +12,19 @@ looks like a block line, since a data line has more cells than a block line.
 
 from lpview.blocks.mistakes import InputError, Mistake
 from lpview.blocks.names import name_problem
-from lpview.blocks.reader import read_model, read_model_bytes
-from lpview.blocks.writer import write_blocks, write_values
+from lpview.blocks.plan import read_plan
+from lpview.blocks.reader import read_label_file, read_model, read_model_bytes
+from lpview.blocks.writer import write_blocks, write_labels, write_values
 
 __all__ = [
     "InputError",
     "Mistake",
     "name_problem",
+    "read_label_file",
     "read_model",
     "read_model_bytes",
+    "read_plan",
     "write_blocks",
+    "write_labels",
     "write_values",
 ]

@@ -15,10 +15,12 @@ from types import MappingProxyType
 
 import numpy as np
 
+from lpview.blocks.advice import advice_on
+from lpview.blocks.decimal_mark import DecimalMark
 from lpview.blocks.even import EvenCells
 from lpview.blocks.mistakes import Problem, quoted
 from lpview.blocks.structure import Block
-from lpview.decimals import NumberError, parse
+from lpview.decimals import NO_NUMBER, NumberError, parse
 from lpview.model import Vector
 
 MOST_DIGITS = 1000
@@ -27,6 +29,7 @@ MOST_DIGITS = 1000
 NO_WORDS: Mapping[str, float] = MappingProxyType({})
 """For numbers that no word can stand for."""
 
+_INFINITE = ("inf", "infinity", "∞")
 _PLAIN = b"0123456789.-+eE,"
 _ZEROS = bytes.maketrans(b"123456789", b"0" * 9)
 
@@ -91,26 +94,33 @@ def read_numbers(cells: Cells, words: Mapping[str, float] = NO_WORDS) -> Numbers
     words
         Texts in lower case that stand for a number, such as an empty one.
     """
-    numbers = parse_all(cells.texts, words)
+    mark = cells.block.mark
+    numbers = parse_all(cells.texts, words, mark)
     for place, expected in numbers.wrong.items():
-        infinite = cells.texts[place].lstrip("+-").casefold() in ("inf", "infinity")
-        if infinite and not any(words):
-            expected = "a finite number"
+        text, advice = cells.texts[place], ""
+        if expected == NO_NUMBER:
+            advice = mark.advice(text) or advice_on(text)
+            if text.lstrip("+-").casefold() in _INFINITE and not any(words):
+                expected = "a finite number"
         *options, last = expected, *filter(None, words)
-        cells.wrong(place, f"{', '.join(options)} or {last}" if options else last)
+        cells.wrong(place, f"{', '.join(options)} or {last}" if options else last, advice)
     return numbers
 
 
-def parse_all(texts: Sequence[str], words: Mapping[str, float] = NO_WORDS) -> Numbers:
+def parse_all(
+    texts: Sequence[str],
+    words: Mapping[str, float] = NO_WORDS,
+    mark: DecimalMark = DecimalMark(),  # noqa: B008 - frozen
+) -> Numbers:
     """The numbers in texts or behind words, and what is wrong with the others."""
     if not isinstance(texts, EvenCells):
-        return _parse_texts(texts, words)
-    values, places, plain = texts.decimals()
+        return _parse_texts(texts, words, mark)
+    values, places, plain = texts.decimals(mark.character)
     most = int(places.max(initial=0, where=plain))
     other = np.flatnonzero(~plain)
     if not other.size:
         return Numbers(values, decimals=most)
-    rest = _parse_texts(list(texts.take(other)), words)
+    rest = _parse_texts(list(texts.take(other)), words, mark)
     values[other] = rest.values
     return Numbers(
         values,
@@ -121,7 +131,7 @@ def parse_all(texts: Sequence[str], words: Mapping[str, float] = NO_WORDS) -> Nu
     )
 
 
-def _parse_texts(texts: Sequence[str], words: Mapping[str, float]) -> Numbers:
+def _parse_texts(texts: Sequence[str], words: Mapping[str, float], mark: DecimalMark) -> Numbers:
     values = np.zeros(len(texts))
     where: Sequence[int] = range(len(texts))
     if words:
@@ -131,6 +141,9 @@ def _parse_texts(texts: Sequence[str], words: Mapping[str, float]) -> Numbers:
         where = [place for place, text in enumerate(folded) if text not in words]
     empty = texts.count("") if "" in words else 0
     rest = [texts[place] for place in where]
+    if mark.comma and rest:
+        # No cell holds a line feed, so that one exchange of marks does for all.
+        rest = mark.with_points("\n".join(rest)).split("\n")
     quick = _floats(rest)
     suspects = range(len(rest)) if quick is None else _suspects(rest, quick)
     values[where] = 0.0 if quick is None else quick
@@ -145,7 +158,7 @@ def _parse_texts(texts: Sequence[str], words: Mapping[str, float]) -> Numbers:
             wrong[place] = str(error)
         if exact is not None:
             odd[place] = exact
-    return Numbers(values, odd, wrong, _most_decimals(rest), empty)
+    return Numbers(values, odd, wrong, 0 if wrong else _most_decimals(rest), empty)
 
 
 def _floats(texts: Sequence[str]) -> Vector | None:
@@ -174,8 +187,17 @@ def _suspects(texts: Sequence[str], values: Vector) -> list[int]:
 
 
 def _most_decimals(texts: Sequence[str]) -> int:
-    zeros = ",".join(texts).encode("utf-8", "replace").translate(_ZEROS)
+    """The most digits after a decimal point; an exponent moves it."""
+    joined = ",".join(texts)
+    scaled: list[str] = []
+    if "e" in joined or "E" in joined:
+        scaled = [text.casefold() for text in texts if "e" in text or "E" in text]
+        joined = ",".join(text for text in texts if not ("e" in text or "E" in text))
     most = 0
+    for text in scaled:
+        mantissa, _, exponent = text.partition("e")
+        most = max(most, len(mantissa.partition(".")[2]) - int(exponent))
+    zeros = joined.encode().translate(_ZEROS)
     while b"." + b"0" * (most + 1) in zeros:
         most += 1
     return most

@@ -69,8 +69,13 @@ class EvenCells(Sequence[str]):
         """The texts at some places."""
         return EvenCells(self.data, self.starts[places], self.ends[places])
 
-    def decimals(self) -> tuple[Vector, Places, NDArray[np.bool_]]:
+    def decimals(self, mark: str = ".") -> tuple[Vector, Places, NDArray[np.bool_]]:
         """Numbers of those cells that are decimals of at most 15 digits.
+
+        Parameters
+        ----------
+        mark
+            What stands between whole and decimal digits.
 
         Returns
         -------
@@ -87,7 +92,7 @@ class EvenCells(Sequence[str]):
             mantissa = np.where(is_digit, mantissa * 10 + byte - 48, mantissa)
             digits += is_digit
             places += is_digit & (points > 0)
-            points += (byte == 46) & inside
+            points += (byte == ord(mark)) & inside
         signed = (first == 43) | (first == 45)
         plain = (size == digits + points + signed) & (points <= 1)
         plain &= (digits > 0) & (digits <= 15)
@@ -178,6 +183,17 @@ def take(texts: Sequence[str], places: Places) -> Sequence[str]:
     if isinstance(texts, EvenCells):
         return texts.take(places)
     return [texts[place] for place in places.tolist()]
+
+
+def marked(texts: Sequence[str]) -> Places:
+    """Places of the texts that hold a point or a comma; they stand as in their bytes."""
+    if isinstance(texts, EvenCells):
+        marks = np.flatnonzero((texts.data == ord(".")) | (texts.data == ord(",")))
+        places = np.searchsorted(texts.starts, marks, side="right") - 1
+        is_inside = (places >= 0) & (marks < texts.ends[places])
+        return np.unique(places[is_inside])
+    held = (("." in text) or ("," in text) for text in texts)
+    return np.flatnonzero(np.fromiter(held, dtype=bool, count=len(texts)))
 
 
 def filled(texts: Sequence[str]) -> Places:

@@ -1,11 +1,13 @@
 """Which blocks there are, and which headers each of them may have.
 
-A further block is an entry of `BLOCKS` and a function that reads it.
+A further block is an entry of `BLOCKS` or `PLAN_BLOCKS` and a function that reads it.
 """
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from collections.abc import Mapping
+from dataclasses import dataclass, replace
+from types import MappingProxyType
 
 Header = tuple[str, ...]
 
@@ -41,29 +43,46 @@ class Kind:
         return f"[{self.name}]" + (f",{self.argument}" if self.argument else "")
 
 
+Kinds = Mapping[str, Kind]
+"""Kinds of blocks by their name."""
+
 _COST = ("column", "cost")
 _ENDS = ("lower", "upper")
-
-BLOCKS: dict[str, Kind] = {
-    kind.name: kind
-    for kind in (
-        Kind("c", (_COST, (*_COST, *_ENDS)), True, True, "minimize or [c],maximize"),
-        Kind("offset", (), False, False, "NUMBER"),
-        Kind("A", (("row", "column", "coefficient"),), True, True),
-        Kind("b", (("row", "relation", "rhs"), ("row", *_ENDS)), False, True),
-        Kind("bounds", (("column", *_ENDS),), False, False),
-    )
-}
-"""Every kind of block by its name."""
+_VALUE = ("column", "value")
 
 
-def block_lines() -> str:
-    """The names of all blocks, for messages."""
-    names = [f"[{name}]" for name in BLOCKS]
-    return f"{', '.join(names[:-1])} or {names[-1]}"
+def _by_name(*kinds: Kind) -> Kinds:
+    return MappingProxyType({kind.name: kind for kind in kinds})
 
 
-def fixed_header(kind: Kind, header: Header) -> Header | None:
+LABELS = _by_name(Kind("labels", (("kind", "name", "label", "unit", "group"),), False, True))
+"""The block of a file of labels alone."""
+
+BLOCKS = _by_name(
+    Kind("c", (_COST, (*_COST, *_ENDS)), True, True, "minimize or [c],maximize"),
+    Kind("offset", (), False, False, "NUMBER"),
+    Kind("A", (("row", "column", "coefficient"),), True, True),
+    Kind("b", (("row", "relation", "rhs"), ("row", *_ENDS)), False, True),
+    Kind("bounds", (("column", *_ENDS),), False, False),
+    *(replace(kind, required=False) for kind in LABELS.values()),
+)
+"""Every kind of block of a model."""
+
+PLAN_BLOCKS = _by_name(
+    Kind("x", (_VALUE,), False, True),
+    Kind("y", (("row", "value"),), False, False),
+    Kind("z", (_VALUE,), False, False),
+)
+"""Every kind of block of a plan."""
+
+
+def block_lines(kinds: Kinds) -> str:
+    """The names of these blocks, for messages."""
+    names = [f"[{name}]" for name in kinds]
+    return f"{', '.join(names[:-1])} or {names[-1]}" if len(names) > 1 else names[0]
+
+
+def fixed_header(kind: Kind, header: Header, kinds: Kinds) -> Header | None:
     """The header in fixed words; an empty one when wide; None when it is wrong.
 
     Words are read without regard to case. A header that begins as the tall form
@@ -76,10 +95,10 @@ def fixed_header(kind: Kind, header: Header) -> Header | None:
     tall = kind.headers[0]
     if not kind.wide or words[:1] != tall[:1] or words[: len(tall)] == tall:
         return None
-    return None if owner(words) else ()
+    return None if owner(words, kinds) else ()
 
 
-def owner(header: Header) -> str:
+def owner(header: Header, kinds: Kinds) -> str:
     """Name of the block that has this fixed header; empty if none has."""
     words = tuple(HEADER_WORDS.get(word, word) for word in map(str.casefold, header))
-    return next((name for name, kind in BLOCKS.items() if words in kind.headers), "")
+    return next((name for name, kind in kinds.items() if words in kind.headers), "")

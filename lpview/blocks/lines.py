@@ -124,6 +124,8 @@ def width_problem(source: Source, cells: list[str], width: int) -> Problem | Non
         return None
     is_block = cells[0].startswith("[") and cells[0].endswith("]")
     advice = "a block line holds only the block's name" if is_block else ""
+    if filled > width and source.separator == "," and source.decimal == "comma":
+        advice = "put numbers with a decimal comma in quotes"
     wrong = Problem(f"{width} cells as in the header", str(filled), advice)
     return separator_problem(source, cells) or wrong
 

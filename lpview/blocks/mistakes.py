@@ -19,6 +19,11 @@ LONGEST = 60
 ERROR_CELLS = frozenset(("#N/A", "#REF!", "#VALUE!", "#NAME?", "#DIV/0!", "#NUM!", "#NULL!"))
 """What a spreadsheet exports where a formula failed."""
 
+ERROR_ADVICE = "mend it in the spreadsheet and export again"
+"""What to do about an error cell."""
+
+_ERROR = "the spreadsheet error "
+
 
 @dataclass(frozen=True)
 class Mistake:
@@ -48,7 +53,8 @@ class Mistake:
         block = f"[{self.block}] " if self.block else ""
         field = f"{shortened(self.field)}: " if self.field else ""
         text = f"{where}: {block}{field}expected {self.expected}, got {self.got}"
-        return "; ".join(filter(None, (text, self._suggestion(), self.advice)))
+        mend = ERROR_ADVICE if self.got.startswith(_ERROR) else ""
+        return "; ".join(filter(None, (text, self._suggestion(), self.advice or mend)))
 
     def _suggestion(self) -> str:
         if not self.choices:
@@ -137,7 +143,7 @@ def quoted(text: str) -> str:
     """Text of the input as a message repeats it: quoted, harmless and short."""
     if not text:
         return "an empty cell"
-    error = "the spreadsheet error " if text in ERROR_CELLS else ""
+    error = _ERROR if text in ERROR_CELLS else ""
     return f"{error}'{shortened(text)}'"
 
 

@@ -71,7 +71,9 @@ def tell_repeated(parts: Sequence[Cells]) -> bool:
     return repeated
 
 
-def look_up(cells: Cells, index: Index | None, known: str) -> NDArray[np.int64] | None:
+def look_up(
+    cells: Cells, index: Index | None, known: str, advice: str = ""
+) -> NDArray[np.int64] | None:
     """Places of names; tells of unknown ones, once for each name.
 
     Parameters
@@ -81,6 +83,8 @@ def look_up(cells: Cells, index: Index | None, known: str) -> NDArray[np.int64] 
         block is wrong.
     known
         What a known name is, in words.
+    advice
+        What else to do about an unknown one, where the nearest name is not all.
 
     Returns
     -------
@@ -97,7 +101,7 @@ def look_up(cells: Cells, index: Index | None, known: str) -> NDArray[np.int64] 
             unknown.setdefault(name, []).append(cells.line(place))
     for name, lines in unknown.items():
         times = f" on {len(lines)} lines" if len(lines) > 1 else ""
-        problem = Problem(known, quoted(name) + times)
+        problem = Problem(known, quoted(name) + times, advice)
         choices = tuple(index) if name else ()
         cells.block.place.unknown(lines[0], cells.fields[0], problem, name, choices)
     return None

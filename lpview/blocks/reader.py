@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import os
 from collections.abc import Collection, Mapping, Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from pathlib import Path
 from types import MappingProxyType
 
@@ -13,26 +13,35 @@ import numpy as np
 from lpview.blocks.cells import Numbers
 from lpview.blocks.coefficients import Coefficients, read_coefficients
 from lpview.blocks.ends import Piece, Rows, joined, read_bounds, read_rows
-from lpview.blocks.layout import BLOCKS
-from lpview.blocks.mistakes import Mistake, Mistakes, Problem, printable
+from lpview.blocks.labels import read_labels
+from lpview.blocks.layout import LABELS
+from lpview.blocks.mistakes import Mistakes
 from lpview.blocks.names import Index, name_problem, names_alike
 from lpview.blocks.objective import Objective, read_objective, read_offset
-from lpview.blocks.source import Source, from_bytes, read_path
-from lpview.blocks.structure import Block, read_blocks
+from lpview.blocks.source import PACKED, Source, from_bytes, read_file, read_path
+from lpview.blocks.structure import Block, blocks_by_name
+from lpview.blocks.writer import signed
+from lpview.labels import Labels
 from lpview.model import LinearProgram, frozen_odd
 from lpview.reading import Notes, Reading
 
 
-def read_model(source: str | Path) -> Reading:
+def read_model(source: str | Path, decimal: str | None = None) -> Reading:
     """Read a file or a folder of CSV blocks.
+
+    Parameters
+    ----------
+    decimal
+        The decimal mark, "point" or "comma"; None leaves it to the files.
 
     Raises `InputError` with all mistakes found, if there are any.
     """
     path = Path(os.path.abspath(source))  # noqa: PTH100 - "." and ".." get a name
-    return _read(read_path(source), path.name if path.is_dir() else path.stem)
+    stem = Path(path.stem).stem if path.suffix.casefold() == PACKED else path.stem
+    return _read(read_path(source, decimal), path.name if path.is_dir() else stem)
 
 
-def read_model_bytes(data: bytes, name: str) -> Reading:
+def read_model_bytes(data: bytes, name: str, decimal: str | None = None) -> Reading:
     """Read CSV blocks that are in memory, such as standard input.
 
     Parameters
@@ -41,10 +50,26 @@ def read_model_bytes(data: bytes, name: str) -> Reading:
         The bytes of one file.
     name
         Its name in messages, and the name of the model.
+    decimal
+        The decimal mark, "point" or "comma"; None leaves it to the file.
 
     Raises `InputError` with all mistakes found, if there are any.
     """
-    return _read([from_bytes(data, name)], name)
+    return _read([from_bytes(data, name, decimal=decimal)], name)
+
+
+def read_label_file(file: str, lp: LinearProgram) -> Labels:
+    """Labels of a model in a file of their own, of which the block line may be left out.
+
+    Raises `InputError` with all mistakes found, if there are any.
+    """
+    mistakes = Mistakes()
+    source = replace(read_file(file), kinds=LABELS, implied="labels")
+    blocks = blocks_by_name([source], mistakes)["labels"]
+    rows, columns = ({name: k for k, name in enumerate(names)} for names in (lp.rows, lp.columns))
+    labels = read_labels(blocks, rows, columns)
+    mistakes.stop([file])
+    return signed(lp, labels)
 
 
 @dataclass(frozen=True)
@@ -67,41 +92,23 @@ class _Contents:
 
 def _read(sources: Sequence[Source], name: str) -> Reading:
     mistakes = Mistakes()
-    blocks = _blocks_by_name(sources, mistakes)
+    blocks = blocks_by_name(sources, mistakes)
     broken = {mistake.block for mistake in mistakes.found}
     objective, rows = read_objective(blocks["c"]), read_rows(blocks["b"])
     columns = _index(objective.names, blocks["c"], broken)
+    row_index = _index(rows.names, blocks["b"], broken)
     contents = _Contents(
         blocks=blocks,
         objective=objective,
         offset=read_offset(blocks["offset"]),
-        matrix=read_coefficients(blocks["A"], _index(rows.names, blocks["b"], broken), columns),
+        matrix=read_coefficients(blocks["A"], row_index, columns),
         rows=rows,
         bounds=read_bounds(blocks["bounds"], columns, objective.bounds),
     )
+    labels = read_labels(blocks["labels"], row_index, columns)
     mistakes.stop([source.file for source in sources])
-    return Reading(_model(contents, name), _notes(contents))
-
-
-def _blocks_by_name(sources: Sequence[Source], mistakes: Mistakes) -> dict[str, list[Block]]:
-    """All blocks; tells of repeated and of missing ones."""
-    blocks: dict[str, list[Block]] = {name: [] for name in BLOCKS}
-    first: dict[tuple[str, ...], Block] = {}
-    for source in sources:
-        for block in read_blocks(source, mistakes):
-            key = (block.name, *map(str.casefold, block.header))
-            if first.setdefault(key, block) is block:
-                blocks[block.name].append(block)
-                continue
-            other = first[key]
-            where = "" if other.source is source else f" of {printable(other.source.file)}"
-            problem = Problem("this block once", f"it again after line {other.line}{where}")
-            block.place.wrong(block.line, "block line", problem)
-    broken = {mistake.block for mistake in mistakes.found}
-    for name, kind in BLOCKS.items():
-        if kind.required and not blocks[name] and not broken & {name, ""}:
-            mistakes.add(Mistake(sources[0].file, f"the block [{name}]", "none"))
-    return blocks
+    lp = _model(contents, name)
+    return Reading(lp, _notes(contents), signed(lp, labels))
 
 
 def _index(names: Sequence[str], blocks: Sequence[Block], broken: Collection[str]) -> Index | None:

@@ -9,30 +9,30 @@ import csv
 import os
 import re
 from collections.abc import Iterator, Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, field
 from pathlib import Path
 
+from lpview.blocks.encoding import text_of
+from lpview.blocks.layout import BLOCKS, Kinds
 from lpview.blocks.mistakes import InputError, Mistake, quoted
 
-FOLDER_FILES = {"c.csv": "c", "A.csv": "A", "b.csv": "b", "bounds.csv": "bounds"}
+FOLDER_FILES = {f"{block}.csv": block for block in ("c", "A", "b", "bounds", "labels")}
 """Files of a model that is a folder, and the block with which each begins."""
 
-OPTIONAL_FILES = frozenset({"bounds.csv"})
+PACKED = ".gz"
+"""What follows the name of any of them that gzip has packed."""
+
+OPTIONAL_FILES = frozenset({"bounds.csv", "labels.csv"})
 """Files that a folder may lack."""
 
 SEPARATORS = {",": "commas", ";": "semicolons", "\t": "tabs"}
 """What may stand between cells, and its name in messages."""
 
-_SIGNATURES = {
-    b"PK\x03\x04": "a zip archive or spreadsheet file",
-    b"\x1f\x8b": "a gzip archive",
-    b"\xff\xfe": "UTF-16",
-    b"\xfe\xff": "UTF-16",
-}
+_WHOLE = {"": "a linear program", "labels": "labels", "x": "a plan"}
 _SEP_LINE = re.compile(r'"?sep=(.)"?[^\S\n]*(?=\n|\Z)', re.IGNORECASE)
 _BLANKS_AFTER_QUOTE = re.compile(r'("(?:[^"]|"")*")[^\S\n\t]+(?=[,;\t]|\Z)')
 _FIRST_CELL = re.compile(
-    r'^[^\S\n\t]*"?(?:\[[^\]\n]*\]|row|column)"?[^\S\n\t]*([,;\t])',
+    r'^[^\S\n\t]*"?(?:\[[^\]\n]*\]|row|column|kind)"?[^\S\n\t]*([,;\t])',
     re.IGNORECASE | re.MULTILINE,
 )
 
@@ -49,6 +49,17 @@ class Source:
     """What stands between cells: comma, semicolon or tab."""
     block: str = ""
     """Name of the block with which the file must begin; empty for any."""
+    kinds: Kinds = field(default_factory=lambda: BLOCKS)
+    """The blocks that the file may have."""
+    implied: str = ""
+    """Name of the block that a file which begins with its header needs no line for."""
+    decimal: str | None = None
+    """The decimal mark as the user said it, "point" or "comma"; None if it was not said."""
+
+    @property
+    def wanted(self) -> str:
+        """What the file should hold, for messages."""
+        return f"the block [{self.block}]" if self.block else _WHOLE[self.implied]
 
     def cells(self, line: str) -> list[str]:
         """The trimmed cells of one line. Raises `csv.Error` for broken quotes."""
@@ -62,18 +73,23 @@ class Source:
         return csv.reader(lines, delimiter=self.separator, strict=True, skipinitialspace=True)
 
 
-def read_path(path: str | Path) -> list[Source]:
+def read_path(path: str | Path, decimal: str | None = None) -> list[Source]:
     """The files of a model: one, or those of a folder. Raises `InputError`."""
     if not Path(path).is_dir():
-        return [read_file(str(path))]
+        return [read_file(str(path), decimal=decimal)]
     sources: list[Source] = []
     mistakes: list[Mistake] = []
     for name, block in FOLDER_FILES.items():
-        file = os.path.join(path, name)  # noqa: PTH118 - the path as the user gave it
-        if name in OPTIONAL_FILES and not os.path.lexists(file):
+        plain = os.path.join(path, name)  # noqa: PTH118 - the path as the user gave it
+        there = [file for file in (plain, f"{plain}{PACKED}") if os.path.lexists(file)]
+        if len(there) > 1:
+            got, advice = f"{name}{PACKED} beside it", "take one of them away"
+            mistakes.append(Mistake(plain, f"one file with [{block}]", got, advice=advice))
+            continue
+        if not there and name in OPTIONAL_FILES:
             continue
         try:
-            sources.append(read_file(file, block))
+            sources.append(read_file(there[0] if there else plain, block, decimal))
         except InputError as error:
             mistakes += error.mistakes
     mistakes += _misnamed(path)
@@ -84,7 +100,9 @@ def read_path(path: str | Path) -> list[Source]:
 
 def _misnamed(path: str | Path) -> list[Mistake]:
     """Files that would be read if their names had other capitals: never lost unsaid."""
-    wanted = {name.casefold(): name for name in FOLDER_FILES}
+    wanted = {
+        name.casefold(): name for name in (*FOLDER_FILES, *(f"{n}{PACKED}" for n in FOLDER_FILES))
+    }
     return [
         Mistake(os.path.join(path, name), f"the name {meant}", "other capitals", advice="rename it")  # noqa: PTH118
         for name in sorted(os.listdir(path))  # noqa: PTH208 - only the names matter
@@ -92,7 +110,7 @@ def _misnamed(path: str | Path) -> list[Mistake]:
     ]
 
 
-def read_file(file: str, block: str = "") -> Source:
+def read_file(file: str, block: str = "", decimal: str | None = None) -> Source:
     """The text of one file. Raises `InputError`."""
     try:
         data = Path(file).read_bytes()
@@ -102,32 +120,12 @@ def read_file(file: str, block: str = "") -> Source:
     except OSError as error:
         reason = error.strerror or type(error).__name__
         raise InputError([Mistake(file, "a readable file", f"'{reason}'")]) from None
-    return from_bytes(data, file, block)
+    return from_bytes(data, file, block, decimal)
 
 
-def from_bytes(data: bytes, file: str, block: str = "") -> Source:
-    """The text in ``data``. Raises `InputError` unless it is UTF-8 text."""
-    advice = "export it as CSV in UTF-8"
-    for start, kind in _SIGNATURES.items():
-        if data.startswith(start):
-            raise InputError([Mistake(file, "UTF-8 text", kind, advice=advice)])
-    if b"\0" in data:
-        line = data.count(b"\n", 0, data.index(b"\0")) + 1
-        raise InputError([Mistake(file, "UTF-8 text", "binary data", line, advice=advice)])
-    try:
-        text = data.decode("utf-8-sig")
-    except UnicodeDecodeError as error:
-        before = error.object[: error.start].decode().replace("\r\n", "\n")
-        line = before.count("\n") + before.count("\r") + 1
-        byte = f"the byte 0x{error.object[error.start]:02x}"
-        wrong = Mistake(file, "UTF-8 text", byte, line, advice=advice)
-        raise InputError([wrong]) from None
-    if not text.strip():
-        raise InputError([Mistake(file, "a linear program", "an empty file")])
-    return _source(file, text, block)
-
-
-def _source(file: str, text: str, block: str) -> Source:
+def from_bytes(data: bytes, file: str, block: str = "", decimal: str | None = None) -> Source:
+    """The text in ``data``. Raises `InputError` unless it is text."""
+    text = text_of(data, file)
     if "\r" in text:
         text = text.replace("\r\n", "\n").replace("\r", "\n")
     given = _SEP_LINE.match(text)
@@ -135,6 +133,6 @@ def _source(file: str, text: str, block: str) -> Source:
         if given[1] not in SEPARATORS:
             names = "sep=, or sep=; or sep= and a tab"
             raise InputError([Mistake(file, names, quoted(given[0].strip('"')), 1)])
-        return Source(file, text[given.end() :], given[1], block)
+        return Source(file, text[given.end() :], given[1], block, decimal=decimal)
     found = _FIRST_CELL.search(text)
-    return Source(file, text, found[1] if found else ",", block)
+    return Source(file, text, found[1] if found else ",", block, decimal=decimal)

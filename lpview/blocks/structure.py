@@ -7,10 +7,13 @@ or with mistakes goes line by line, which also makes the messages.
 from __future__ import annotations
 
 from collections.abc import Iterator, Sequence
-from dataclasses import dataclass, replace
+from dataclasses import dataclass, field, replace
 
-from lpview.blocks.even import even_cells
-from lpview.blocks.layout import BLOCKS, Header, Kind, block_lines, fixed_header, owner
+import numpy as np
+
+from lpview.blocks.decimal_mark import DecimalMark, MarkedCell, recognised
+from lpview.blocks.even import even_cells, marked
+from lpview.blocks.layout import Header, Kind, Kinds, block_lines, fixed_header, owner
 from lpview.blocks.lines import (
     error_comments,
     filled_lines,
@@ -19,10 +22,11 @@ from lpview.blocks.lines import (
     width_problem,
     without_comments,
 )
-from lpview.blocks.mistakes import Mistakes, Place, Problem, quoted
+from lpview.blocks.mistakes import Mistake, Mistakes, Place, Problem, printable, quoted
 from lpview.blocks.source import Source
 
 _ANY_SEPARATOR = ",;\t "
+_NUMBERS = frozenset(("cost", "lower", "upper", "coefficient", "rhs", "value"))
 
 
 @dataclass(frozen=True)
@@ -47,6 +51,8 @@ class Block:
     """Cells below the header, line by line, each as long as the header."""
     lines: Sequence[int] = ()
     """Lines of the file on which they stand."""
+    mark: DecimalMark = field(default_factory=DecimalMark)
+    """The decimal mark of the file."""
 
     @property
     def name(self) -> str:
@@ -66,13 +72,53 @@ class _Part:
     """The lines below it, up to the next block line."""
 
 
+def blocks_by_name(sources: Sequence[Source], mistakes: Mistakes) -> dict[str, list[Block]]:
+    """All blocks of some files of one kind; tells of repeated and of missing ones."""
+    kinds = sources[0].kinds
+    blocks: dict[str, list[Block]] = {name: [] for name in kinds}
+    first: dict[tuple[str, ...], Block] = {}
+    for source in sources:
+        for block in read_blocks(source, mistakes):
+            key = (block.name, *map(str.casefold, block.header))
+            if first.setdefault(key, block) is block:
+                blocks[block.name].append(block)
+                continue
+            other = first[key]
+            where = "" if other.source is source else f" of {printable(other.source.file)}"
+            problem = Problem("this block once", f"it again after line {other.line}{where}")
+            block.place.wrong(block.line, "block line", problem)
+    broken = {mistake.block for mistake in mistakes.found}
+    for name, kind in kinds.items():
+        if kind.required and not blocks[name] and not broken & {name, ""}:
+            mistakes.add(Mistake(sources[0].file, f"the block [{name}]", "none"))
+    return blocks
+
+
 def read_blocks(source: Source, mistakes: Mistakes) -> list[Block]:
     """The blocks of a file in order, without those that cannot be read."""
     place = Place(source.file, "", mistakes)
+    if not source.text.strip():
+        mistakes.add(Mistake(source.file, source.wanted, "an empty file"))
+        return []
     for number, cell in error_comments(source):
         place.wrong(number, "comment", Problem("a comment in words", quoted(cell)))
-    blocks = (_block(source, part, mistakes) for part in _parts(source, place))
-    return [block for block in blocks if block is not None]
+    parts = (_block(source, part, mistakes) for part in _parts(source, place))
+    blocks = [block for block in parts if block is not None]
+    mark = recognised(source, (cell for block in blocks for cell in _marked_cells(block)))
+    return [replace(block, mark=mark) for block in blocks]
+
+
+def _marked_cells(block: Block) -> Iterator[MarkedCell]:
+    """The cells for numbers that hold a point or a comma."""
+    header = block.fixed or block.header
+    if not header:
+        yield MarkedCell(block.argument, block.line, "number", block.place)
+        return
+    numbers = [k for k, word in enumerate(header) if (word in _NUMBERS if block.fixed else k)]
+    places = marked(block.flat)
+    for place in places[np.isin(places % len(header), numbers)]:
+        line, column = divmod(int(place), len(header))
+        yield MarkedCell(block.flat[int(place)], block.lines[line], header[column], block.place)
 
 
 def _parts(source: Source, place: Place) -> list[_Part]:
@@ -85,16 +131,30 @@ def _parts(source: Source, place: Place) -> list[_Part]:
         cells = source.cells(line)
         # Within a block of one line nothing else may stand, so nothing is data.
         table = bool(starts) and starts[-1][2][0] != "[offset]"
-        if _is_block_line(cells, table):
+        if _is_block_line(cells, table, source.kinds):
             starts.append((start, end + 1, cells))
     before = text[: starts[0][0]] if starts else text
+    if _begins_with_header(source, before, place):
+        starts.insert(0, (0, 0, [f"[{source.implied}]"]))
+        before = ""
     _check_beginning(source, before, starts[0][2][0] if starts else "", place)
     number, parts = 1 + before.count("\n"), []
     ends = [start for start, _, _ in starts[1:]] + [len(text)]
     for (start, body, cells), end in zip(starts, ends, strict=False):
-        parts.append(_Part(cells, number, text[body:end]))
+        # A block line that is left out stands, as it were, before the first line.
+        parts.append(_Part(cells, number if body else 0, text[body:end]))
         number += text.count("\n", start, end)
     return parts
+
+
+def _begins_with_header(source: Source, before: str, place: Place) -> bool:
+    """Whether the header of the block that needs no block line stands first."""
+    if not source.implied:
+        return False
+    quiet = Place(place.file, place.block, Mistakes())
+    first = next(filled_lines(source, before, 1, quiet), (0, [""]))[1]
+    words = tuple(word.casefold() for word in first if word)
+    return words in source.kinds[source.implied].headers
 
 
 def _bracket_lines(text: str) -> Iterator[tuple[int, int]]:
@@ -109,7 +169,7 @@ def _bracket_lines(text: str) -> Iterator[tuple[int, int]]:
         bracket = text.find("[", end)
 
 
-def _is_block_line(cells: list[str], in_table: bool) -> bool:
+def _is_block_line(cells: list[str], in_table: bool, kinds: Kinds) -> bool:
     """Whether a line whose first cell may be in brackets begins a block.
 
     Names in brackets are allowed in a table, so that a line with further cells is a
@@ -122,17 +182,27 @@ def _is_block_line(cells: list[str], in_table: bool) -> bool:
         return False
     if not rest or not in_table:
         return True
-    kind = BLOCKS.get(name[1:-1])
-    if kind is not None and owner(tuple(rest)) == kind.name:
+    kind = kinds.get(name[1:-1])
+    if kind is not None and owner(tuple(rest), kinds) == kind.name:
         return True
     if kind is None or not kind.argument or len(rest) > 1 or not cells[1]:
         return False
-    return kind.name != "c" or rest[0][0] not in "0123456789+-."
+    return kind.name != "c" or rest[0][0] not in "0123456789+-.,"
+
+
+def _first_line(source: Source) -> str:
+    """What a file must begin with, in words."""
+    if source.block:
+        return source.kinds[source.block].line
+    lines = block_lines(source.kinds)
+    if not source.implied:
+        return lines
+    return f"the header {source.kinds[source.implied].expected_header} or a line {lines}"
 
 
 def _check_beginning(source: Source, before: str, first: str, place: Place) -> None:
     """Only comments may stand before the first block line."""
-    expected = BLOCKS[source.block].line if source.block else block_lines()
+    expected = _first_line(source)
     for number, cells in filled_lines(source, before, 1, place):
         problem = Problem(expected, quoted(cells[0]))
         place.wrong(number, "block line", separator_problem(source, cells) or problem)
@@ -144,10 +214,13 @@ def _check_beginning(source: Source, before: str, first: str, place: Place) -> N
 
 def _block(source: Source, part: _Part, mistakes: Mistakes) -> Block | None:
     name = part.cells[0].rstrip(_ANY_SEPARATOR)
-    kind = BLOCKS.get(name[1:-1])
+    kind = source.kinds.get(name[1:-1])
     if kind is None:
         place = Place(source.file, "", mistakes)
-        problem, known = Problem(block_lines(), quoted(name)), [f"[{k}]" for k in BLOCKS]
+        problem = Problem(block_lines(source.kinds), quoted(name))
+        # One letter is like any other, so that only its capital may have been meant.
+        near = (k for k in source.kinds if len(k) > 1 or k.casefold() == name[1:-1].casefold())
+        known = [f"[{k}]" for k in near]
         place.unknown(part.line, "block line", problem, name, known)
         return None
     place = Place(source.file, kind.name, mistakes)
@@ -188,7 +261,7 @@ def _with_table(block: Block, kind: Kind, text: str) -> Block | None:
     while not cells[-1]:
         cells.pop()
     header = tuple(cells)
-    fixed = fixed_header(kind, header)
+    fixed = fixed_header(kind, header, source.kinds)
     if fixed is None:
         _wrong_header(block, kind, header, number)
         return None
@@ -197,7 +270,7 @@ def _with_table(block: Block, kind: Kind, text: str) -> Block | None:
 
 
 def _wrong_header(block: Block, kind: Kind, header: Header, line: int) -> None:
-    other = owner(header)
+    other = owner(header, block.source.kinds)
     advice = f"that is the header of [{other}]" if other else ""
     problem = Problem(kind.expected_header, quoted(",".join(header)), advice)
     mixed = separator_problem(block.source, list(header))

@@ -6,7 +6,9 @@ commas, costs one a line, triplets by row, numbers in their shortest exact form.
 
 from __future__ import annotations
 
+import hashlib
 from collections.abc import Iterable, Iterator, Mapping
+from dataclasses import replace
 from fractions import Fraction
 
 import numpy as np
@@ -15,6 +17,7 @@ from lpview.blocks.cells import MOST_DIGITS, significant_digits
 from lpview.blocks.mistakes import InputError, Mistake, quoted
 from lpview.blocks.names import name_problem
 from lpview.decimals import number_text
+from lpview.labels import NO_LABEL, Labels
 from lpview.model import LinearProgram, Vector
 
 
@@ -35,6 +38,27 @@ def write_blocks(lp: LinearProgram) -> str:
     if bounds:
         blocks.append(["[bounds]", "column,lower,upper", *bounds])
     return "\n".join("\n".join(block) + "\n" for block in blocks)
+
+
+def write_labels(lp: LinearProgram, labels: Labels) -> str:
+    """The canonical block ``[labels]``; empty for a model without any."""
+    lines = []
+    for kind, names, known in (
+        ("row", lp.rows, labels.rows),
+        ("column", lp.columns, labels.columns),
+        ("objective", ("",), {0: labels.objective}),
+    ):
+        for place, label in sorted(known.items()):
+            if label != NO_LABEL:
+                cells = (names[place], label.label, label.unit, label.group)
+                lines.append(",".join([kind, *_cells(cells)]))
+    return "\n".join(["[labels]", "kind,name,label,unit,group", *lines, ""]) if lines else ""
+
+
+def signed(lp: LinearProgram, labels: Labels) -> Labels:
+    """The labels with the digest of their canonical block."""
+    text = write_labels(lp, labels)
+    return replace(labels, sha256=hashlib.sha256(text.encode()).hexdigest()) if text else labels
 
 
 def write_values(

@@ -10,7 +10,8 @@ from hypothesis import example, given, settings
 from hypothesis import strategies as st
 
 from lpview.blocks.cells import parse_all
-from lpview.blocks.even import EvenCells, even_cells, filled, find, take
+from lpview.blocks.decimal_mark import DecimalMark
+from lpview.blocks.even import EvenCells, even_cells, filled, find, marked, take
 from lpview.decimals import NumberError, exact_value, parse
 
 BODIES = st.text(alphabet='ab1,;\t\n "#é\u00a0\u2003\x1c', max_size=24)
@@ -43,7 +44,7 @@ def lines_of(body: str, separator: str) -> list[list[str]] | None:
 
 
 def as_even(texts: list[str]) -> EvenCells:
-    cells = even_cells("\n".join(f"x,{text}" for text in texts), 2, ",")
+    cells = even_cells("\n".join(f"x;{text}" for text in texts), 2, ";")
     assert cells is not None
     return cells[1::2]
 
@@ -103,6 +104,22 @@ def test_numbers_are_those_of_parse(texts: list[str]) -> None:
 
 
 @settings(deadline=None)
+@given(st.lists(ANYTHING, min_size=1, max_size=4))
+@example(["1.5", "2"])
+@example(["1,2.5", ",5", "5,"])
+def test_decimal_commas_are_points_written_otherwise(texts: list[str]) -> None:
+    """With commas a text is the number that it is with points; a point is then no mark."""
+    texts = [text.strip() for text in texts]
+    exchanged = [text.translate(str.maketrans(".,", ",.")) for text in texts]
+    expected = plainly(texts)
+    comma = DecimalMark(comma=True)
+    for numbers in (parse_all(exchanged, mark=comma), parse_all(as_even(exchanged), mark=comma)):
+        assert (numbers.values.tolist(), dict(numbers.odd), dict(numbers.wrong)) == expected
+        if not numbers.wrong:
+            assert numbers.decimals == parse_all(texts).decimals
+
+
+@settings(deadline=None)
 @given(st.lists(DECIMALS, min_size=1, max_size=4))
 def test_no_digit_is_lost(texts: list[str]) -> None:
     numbers = parse_all(as_even(texts))
@@ -112,10 +129,14 @@ def test_no_digit_is_lost(texts: list[str]) -> None:
             assert value == Fraction(text)
 
 
+PLACES = {"1.5": 1, "-0.25": 2, "7": 0, ".125": 3, "3.": 0, "1/3": 0, "1.00": 2}
+PLACES |= {"1e-5": 5, "1.25E-3": 5, "1.23456e2": 3, "1.5e+7": 0, "9e0": 0}
+
+
 @settings(deadline=None)
-@given(st.lists(st.sampled_from(["1.5", "-0.25", "7", ".125", "3.", "1/3", "1.00"])))
+@given(st.lists(st.sampled_from([*PLACES])))
 def test_the_most_decimals(texts: list[str]) -> None:
-    most = max((len(text.partition(".")[2]) for text in texts), default=0)
+    most = max(map(PLACES.__getitem__, texts), default=0)
     assert parse_all(texts).decimals == most
     if texts:
         assert parse_all(as_even(texts)).decimals == most
@@ -144,6 +165,20 @@ def test_find_is_a_dictionary(texts: list[str], names: list[str]) -> None:
     for cells in (texts, as_even(texts)) if texts else (texts,):
         found = find(cells, index)
         assert (None if found is None else found.tolist()) == expected
+
+
+@pytest.mark.parametrize("kind", [list, as_even])
+def test_marked_texts(kind: type[list]) -> None:
+    texts = kind(["1.5", "", "1", "a,b", "1.200,5", ""])
+    assert marked(texts).tolist() == [0, 3, 4]
+    assert marked(kind(["1", ""])).tolist() == []
+
+
+def test_marks_between_texts_count_for_none() -> None:
+    cells = even_cells('"1.5",2,,\n3,4,,', 2, ",")
+    assert cells is not None
+    assert marked(cells).tolist() == [0]
+    assert marked(cells[1::2]).tolist() == []
 
 
 @pytest.mark.parametrize("kind", [list, as_even])
