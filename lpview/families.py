@@ -1,4 +1,4 @@
-"""Families: lines grouped by what their names begin with.
+"""Families: lines grouped by what their names begin with, or as their labels say.
 
 A name's family is what stands before its first ``[``, ``(``, ``.`` or digit 0 to 9,
 without blanks, ``_`` and ``-`` at the end: ``flow[a,b]`` and ``flow[b,c]`` are of the family
@@ -6,19 +6,21 @@ without blanks, ``_`` and ``-`` at the end: ``flow[a,b]`` and ``flow[b,c]`` are 
 Where only such blanks stand before, they are the family's label (``-`` of ``-1``); a
 name that begins with such a mark belongs to that mark's family, which is ``[``, ``(``
 or ``.``, or ``0-9`` for all digits. No other label holds one of these, so families
-never run into each other.
+never run into each other. A line that is put into a group (`lpview.labels`) belongs to the
+family of that label instead, which may be the one of other lines' names.
 """
 
 from __future__ import annotations
 
 import enum
-from collections.abc import Sequence
+from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 
 import numpy as np
 from numpy.typing import NDArray
 
 from lpview.kkt import Side
+from lpview.labels import Label
 from lpview.marks import Flag
 from lpview.model import Vector
 from lpview.outcomes import Optimal
@@ -78,14 +80,15 @@ class Summary:
     sign names, summed, which is what they add to the dual objective."""
 
 
-def families(names: Sequence[str]) -> Families:
-    """Group names; none is empty."""
+def families(names: Sequence[str], groups: Mapping[int, str] | None = None) -> Families:
+    """Group names; none is empty. ``groups`` has those of lines that do not go by name."""
     heads = _heads(names)
+    label = {head: head.rstrip(_END) or head for head in dict.fromkeys(heads)}
+    if groups:
+        heads = [groups.get(k) or label[head] for k, head in enumerate(heads)]
+        label = {head: head for head in heads}
     number: dict[str, int] = {}
-    family = {
-        head: number.setdefault(head.rstrip(_END) or head, len(number))
-        for head in dict.fromkeys(heads)
-    }
+    family = {head: number.setdefault(label[head], len(number)) for head in dict.fromkeys(heads)}
     of_line = np.fromiter(map(family.__getitem__, heads), dtype=np.intp, count=len(heads))
     # A stable sort of small integers takes a time that grows with their number alone.
     small = of_line.astype(np.uint16) if len(number) < 2**16 else of_line
@@ -110,7 +113,8 @@ def summarize(found: Optimal, kind: Kind) -> Summary:
     """Count and add up the families of the rows or of the columns of an answer."""
     lp, measured = found.head.model, found.measurement
     is_row = kind is Kind.ROW
-    groups = families(lp.rows if is_row else lp.columns)
+    labels = found.head.labels.rows if is_row else found.head.labels.columns
+    groups = families(lp.rows if is_row else lp.columns, groups_of(labels))
     lines = slice(0, lp.m) if is_row else slice(lp.m, lp.m + lp.n)
     side: Side = measured.rows if is_row else measured.columns
     degenerate = found.marks.flags.get(Flag.DEGENERATE)
@@ -125,6 +129,11 @@ def summarize(found: Optimal, kind: Kind) -> Summary:
         largest=_largest(groups, np.abs(side.price)),
         worth=_summed(groups, worth),
     )
+
+
+def groups_of(labels: Mapping[int, Label]) -> dict[int, str]:
+    """The groups of lines that have one."""
+    return {k: known.group for k, known in labels.items() if known.group}
 
 
 def _summed(groups: Families, values: NDArray[np.generic]) -> Vector:

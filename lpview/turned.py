@@ -19,6 +19,7 @@ from lpview.decimals import number_text
 from lpview.dual import DualProgram, build_dual, dual_answer
 from lpview.examination import check_answer
 from lpview.kkt import Side
+from lpview.labels import NO_LABELS, Label, Labels
 from lpview.outcomes import Head, Optimal, Request
 from lpview.reading import Notes
 from lpview.sides import NOWHERE, Index
@@ -46,13 +47,32 @@ def turn(found: Optimal) -> Turned:
     the dual, and a violation a price of the wrong sign: what fails there fails here.
     """
     pair = build_dual(found.head.model)
+    to_primal = _to_primal(found, pair)
     # The check's own reduced costs: an answer may report others.
     exact = replace(found.answer, z=found.measurement.columns.price)
-    checked = check_answer(_head(found.head, pair), dual_answer(pair, exact))
-    return Turned(checked, _to_dual(found, pair), _to_primal(found, pair))
+    head = _head(found.head, pair, _labels(found.head, pair.program.m, to_primal))
+    return Turned(check_answer(head, dual_answer(pair, exact)), _to_dual(found, pair), to_primal)
 
 
-def _head(head: Head, pair: DualProgram) -> Head:
+def _labels(head: Head, m: int, to_primal: Index) -> Labels:
+    """Each line of the dual keeps the label of its own; units and groups do not turn.
+
+    ``m`` counts the rows of the dual.
+    """
+    if not head.labels.rows and not head.labels.columns:
+        return NO_LABELS
+    own = head.model.m
+    known = [
+        (head.labels.row(line) if line < own else head.labels.column(line - own)).label
+        for line in to_primal.tolist()
+    ]
+    rows, columns = (
+        {k: Label(text) for k, text in enumerate(part) if text} for part in (known[:m], known[m:])
+    )
+    return Labels(rows, columns)
+
+
+def _head(head: Head, pair: DualProgram, labels: Labels) -> Head:
     """What was asked, of the dual; the run is the one that answered the model."""
     digest = hashlib.sha256(write_blocks(pair.program).encode()).hexdigest()
     request = replace(
@@ -60,7 +80,7 @@ def _head(head: Head, pair: DualProgram) -> Head:
         source=f"dual of {head.request.source}",
         command=_command(head.request),
     )
-    return Head(pair.program, Notes(0, 0, (), (), {}), digest, request, head.run)
+    return Head(pair.program, Notes(0, 0, (), (), {}), digest, request, head.run, labels)
 
 
 def _command(request: Request) -> str:

@@ -11,6 +11,15 @@ from lpview.polish import OwnNumbers
 from lpview.report.document import Block, Facts, Pairs, Table
 from lpview.report.names import fitted, line_name
 from lpview.report.numbers import count, in_full, number, residual
+from lpview.report.units import (
+    in_units,
+    label_of,
+    labelled,
+    objective_unit,
+    price_header,
+    units_of,
+    with_column,
+)
 from lpview.verdict import Verdict
 
 MOST_ROWS = 10
@@ -57,7 +66,10 @@ def _conditions(found: Optimal) -> Table:
         "relative",
         "tolerance",
     )
-    return Table("", header, rows, (False, False, False, True, True, True, True))
+    table = Table("", header, rows, (False, False, False, True, True, True, True))
+    worst = [-1 if verdict.worst is None else verdict.worst for verdict in found.verdicts]
+    labels = [fitted(label_of(found.head, k).label) if k >= 0 else "" for k in worst]
+    return with_column(table, 3, "label", labels) if any(labels) else table
 
 
 def _condition(found: Optimal, verdict: Verdict) -> tuple[str, ...]:
@@ -81,14 +93,22 @@ def _objectives(found: Optimal) -> tuple[tuple[str, str], ...]:
     else:
         printed = (
             f"{line_name(found.head.model, rounded.line)} is violated by "
-            f"{residual(rounded.absolute)} (scaled {residual(rounded.scaled)})"
+            f"{in_units(residual(rounded.absolute), units_of(found.head, rounded.line).own)} "
+            f"(scaled {residual(rounded.scaled)})"
         )
+    primal, dual, gap, at_stake = (
+        in_units(text, objective_unit(found.head))
+        for text in (
+            in_full(measured.primal_objective),
+            in_full(measured.dual_objective),
+            residual(measured.gap),
+            residual(measured.at_stake),
+        )
+    )
     return (
         (
             "objective",
-            f"primal {in_full(measured.primal_objective)}, "
-            f"dual {in_full(measured.dual_objective)}, gap {residual(measured.gap)}, "
-            f"at stake in the residuals {residual(measured.at_stake)}",
+            f"primal {primal}, dual {dual}, gap {gap}, at stake in the residuals {at_stake}",
         ),
         (f"plan at {rounded.digits} digits", printed),
         ("answer", _origin(found)),
@@ -147,8 +167,10 @@ def _zero_slack_rows(found: Optimal, full: bool, most: int) -> Table:
         )
         for i in shown.tolist()
     )
+    title += price_header(found.head)
     header = ("row", "row value", "slack", "dual value", "|price x side|")
-    return Table(title, header, cells, (False, True, True, True, True))
+    table = Table(title, header, cells, (False, True, True, True, True))
+    return labelled(found.head, table, shown.tolist(), units=True)
 
 
 def _flags(found: Optimal, full: bool) -> tuple[tuple[str, str], ...]:

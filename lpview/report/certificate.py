@@ -2,15 +2,22 @@
 
 from __future__ import annotations
 
-import numpy as np
+from dataclasses import dataclass
 
+import numpy as np
+from numpy.typing import NDArray
+
+from lpview.marks import Mask
 from lpview.model import LinearProgram, Vector
-from lpview.outcomes import NoOptimum
+from lpview.outcomes import Head, NoOptimum
 from lpview.repair.certificate import NOISE, Farkas, Ray
 from lpview.repair.search import Infeasible
 from lpview.report.document import Block, Facts, Sentence, Table
-from lpview.report.names import fitted
+from lpview.report.names import fitted, line_name
 from lpview.report.numbers import count, number, residual
+from lpview.report.units import amount, labelled, objective_unit, units_of
+
+Index = NDArray[np.intp]
 
 MOST_LINES = 20
 """Lines of a certificate shown unless the full report is asked for."""
@@ -24,13 +31,13 @@ _DUAL = {
 
 def body(found: NoOptimum, full: bool) -> tuple[Block, ...]:
     """The certificate and what it means."""
-    lp, certificate = found.head.model, found.certificate
+    head, certificate = found.head, found.certificate
     if isinstance(certificate, Infeasible):
-        return _infeasible(lp, certificate, full)
-    return _unbounded(lp, certificate.ray, full)
+        return _infeasible(head, certificate, full)
+    return _unbounded(head, certificate.ray, full)
 
 
-def _infeasible(lp: LinearProgram, certificate: Infeasible, full: bool) -> tuple[Block, ...]:
+def _infeasible(head: Head, certificate: Infeasible, full: bool) -> tuple[Block, ...]:
     farkas = certificate.farkas
     return (
         Sentence(
@@ -38,7 +45,7 @@ def _infeasible(lp: LinearProgram, certificate: Infeasible, full: bool) -> tuple
             f"for any plan, and is {number(farkas.contradiction)}."
         ),
         Sentence(_reach(farkas)),
-        _multipliers(lp, farkas, full),
+        _multipliers(head, farkas, full),
         Facts((("the dual is", _DUAL[certificate.dual_infeasible]),)),
     )
 
@@ -52,8 +59,22 @@ def _reach(farkas: Farkas) -> str:
     )
 
 
-def _multipliers(lp: LinearProgram, farkas: Farkas, full: bool) -> Table:
-    """Lines of the contradiction, the largest multiplier times end first."""
+@dataclass(frozen=True, eq=False)
+class Contradiction:
+    """The lines of a contradiction, numbered as in `lpview.kkt`; other arrays ``(m + n,)``."""
+
+    lines: Index
+    """Those with a multiplier, the largest multiplier first."""
+    multiplier: Vector
+    """What each is multiplied by; rounding is 0."""
+    named: Vector
+    """The side or bound that its multiplier names."""
+    fixed: Mask
+    """Equality rows and fixed columns."""
+
+
+def contradiction(lp: LinearProgram, farkas: Farkas) -> Contradiction:
+    """Which lines contradict each other."""
     multiplier = np.concatenate([farkas.y, farkas.z])
     rounding = np.abs(multiplier) <= NOISE * np.abs(multiplier).max(initial=0.0)
     multiplier = np.where(rounding, 0.0, multiplier)
@@ -62,44 +83,59 @@ def _multipliers(lp: LinearProgram, farkas: Farkas, full: bool) -> Table:
     named = np.where(multiplier > 0, low, high)
     used = np.flatnonzero((multiplier != 0) & np.isfinite(named))
     order = used[np.argsort(-np.abs(multiplier[used]), kind="stable")]
-    shown = order if full else order[:MOST_LINES]
+    return Contradiction(order, multiplier, named, low == high)
+
+
+def _multipliers(head: Head, farkas: Farkas, full: bool) -> Table:
+    """Lines of the contradiction, the largest multiplier first."""
+    lp = head.model
+    found = contradiction(lp, farkas)
+    shown = (found.lines if full else found.lines[:MOST_LINES]).tolist()
     rows = []
-    for line in shown.tolist():
-        is_row = line < lp.m
-        relation = "=" if low[line] == high[line] else ">=" if multiplier[line] > 0 else "<="
-        name = lp.rows[line] if is_row else lp.columns[line - lp.m]
+    for line in shown:
+        relation = "=" if found.fixed[line] else ">=" if found.multiplier[line] > 0 else "<="
         rows.append(
             (
-                f"{'row' if is_row else 'column'} {fitted(name)}",
-                number(multiplier[line]),
-                f"{relation} {number(named[line])}",
-                "side" if is_row else "bound",
+                line_name(lp, line),
+                number(found.multiplier[line]),
+                f"{relation} {amount(found.named[line], units_of(head, line).own)}",
+                "side" if line < lp.m else "bound",
             )
         )
-    title = f"lines that contradict each other: {shown.size} of {used.size}"
+    title = f"lines that contradict each other: {len(shown)} of {found.lines.size}"
     header = ("line", "multiplier", "limit", "kind")
-    return Table(title, header, tuple(rows), (False, True, True, False))
+    return labelled(head, Table(title, header, tuple(rows), (False, True, True, False)), shown)
 
 
-def _unbounded(lp: LinearProgram, ray: Ray, full: bool) -> tuple[Block, ...]:
+def _unbounded(head: Head, ray: Ray, full: bool) -> tuple[Block, ...]:
+    rate = amount(ray.rate, objective_unit(head))
     return (
         Sentence(
             f"From a feasible plan (scaled violation {residual(ray.violation)}), each step along "
-            f"the ray changes the objective by {number(ray.rate)} and keeps every line within "
+            f"the ray changes the objective by {rate} and keeps every line within "
             f"its sides and bounds (relative drift {residual(ray.drift)})."
         ),
-        _moving(lp, ray.x, ray.direction, full),
+        _moving(head, ray, full),
     )
 
 
-def _moving(lp: LinearProgram, x: Vector, direction: Vector, full: bool) -> Table:
-    moving = np.flatnonzero(direction)
-    order = moving[np.argsort(-np.abs(direction[moving]), kind="stable")]
-    shown = order if full else order[:MOST_LINES]
-    verb = "moves" if moving.size == 1 else "move"
-    title = f"{count(moving.size, 'column')} {verb} along the ray: {shown.size} shown"
+def moving(ray: Ray) -> list[int]:
+    """Columns that move along a ray, from 0, the fastest first."""
+    columns = np.flatnonzero(ray.direction)
+    order = np.argsort(-np.abs(ray.direction[columns]), kind="stable")
+    fastest: list[int] = columns[order].tolist()
+    return fastest
+
+
+def _moving(head: Head, ray: Ray, full: bool) -> Table:
+    lp, columns = head.model, moving(ray)
+    shown = columns if full else columns[:MOST_LINES]
+    verb = "moves" if len(columns) == 1 else "move"
+    title = f"{count(len(columns), 'column')} {verb} along the ray: {len(shown)} shown"
     cells = tuple(
-        (fitted(lp.columns[j]), number(x[j]), number(direction[j]), number(lp.c[j]))
-        for j in shown.tolist()
+        (fitted(lp.columns[j]), number(ray.x[j]), number(ray.direction[j]), number(lp.c[j]))
+        for j in shown
     )
-    return Table(title, ("column", "value", "step", "cost"), cells, (False, True, True, True))
+    header = ("column", "value", "step", "cost")
+    table = Table(title, header, cells, (False, True, True, True))
+    return labelled(head, table, [lp.m + j for j in shown], units=True)

@@ -12,6 +12,7 @@ from lpview.proof.results import Proof, ProvedOptimal
 from lpview.repair.search import Infeasible
 from lpview.report import answer, certificate
 from lpview.report.document import Block, Command, Document, Facts, Pairs, Sentence, Table
+from lpview.report.heads import noticed, title
 from lpview.report.names import safe
 from lpview.report.numbers import count, residual
 from lpview.report.proof import proof_facts, proof_verdict
@@ -48,8 +49,8 @@ def report(
             found = with_exact_zeros(found, proof)
     beside = proof is not None and isinstance(found, Optimal) and contradicts(found, proof)
     return (
-        Sentence(f"{_title(head)}: {words}", strong=True),
-        Sentence("; ".join([shape(head.model), *_notes(head)])),
+        Sentence(f"{title(head)}: {words}", strong=True),
+        Sentence("; ".join([shape(head.model), *noticed(head)])),
         *((Facts(facts),) if facts else ()),
         *((Sentence(BESIDE_THE_PROOF),) if beside else ()),
         *_body(found, full, tables, prices, bool(facts)),
@@ -57,10 +58,6 @@ def report(
         Command("reproduce", head.request.command),
         Sentence(CAUTION),
     )
-
-
-def _title(head: Head) -> str:
-    return safe(head.request.source)
 
 
 def verdict(found: Examination) -> str:
@@ -90,22 +87,6 @@ def shape(lp: LinearProgram) -> str:
         f"{lp.sense.value}, {count(lp.m, 'constraint')}, {count(lp.n, 'variable')}, "
         f"{count(lp.A.nnz, 'nonzero coefficient')}"
     )
-
-
-def _notes(head: Head) -> list[str]:
-    """What reading noticed, where it noticed anything."""
-    notes, parts = head.notes, []
-    if notes.empty_coefficients:
-        parts.append(f"{count(notes.empty_coefficients, 'empty coefficient')} read as 0")
-    if notes.empty_costs:
-        parts.append(f"{count(notes.empty_costs, 'empty cost')} read as 0")
-    if notes.rows_without_coefficients:
-        parts.append(f"{count(len(notes.rows_without_coefficients), 'row')} without coefficients")
-    if notes.names_alike:
-        one, other = notes.names_alike[0]
-        pairs = count(len(notes.names_alike), "pair")
-        parts.append(f"{pairs} of names alike, such as {safe(one)} and {safe(other)}")
-    return ["noticed while reading: " + ", ".join(parts)] if parts else []
 
 
 def _body(
@@ -139,8 +120,10 @@ def provenance(head: Head) -> Pairs:
     rescaled = "; lines rescaled by powers of two" if run.rescaled else ""
     most = ", ".join(f"{block} {places}" for block, places in head.notes.most_decimals.items())
     decimals = f"most decimals {most}"
+    labels = head.labels.sha256
     return (
         ("model SHA-256", head.sha256),
+        *((("labels SHA-256", labels),) if labels else ()),
         (
             "made with",
             f"lpview {__version__}, {run.solver}, Python {platform.python_version()}; tolerance "

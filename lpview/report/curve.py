@@ -6,14 +6,16 @@ import math
 from collections.abc import Mapping
 
 from lpview.model import LinearProgram
-from lpview.outcomes import Optimal
+from lpview.outcomes import Head, Optimal
 from lpview.prices.curve import Beyond, Curve, NoCurve, is_same
 from lpview.prices.number import Number, Part
 from lpview.report.check import CAUTION
 from lpview.report.document import Block, Command, Document, Facts, Sentence, Table
-from lpview.report.names import line_name, safe
+from lpview.report.heads import noticed_sentences, title
+from lpview.report.names import line_name
 from lpview.report.numbers import count, number, residual
 from lpview.report.plot import BRAILLE, PLAIN, Point, plot
+from lpview.report.units import amount, units_of
 
 PLOT = (78, 16)
 """Width and height of the plot of the curve, in cells."""
@@ -47,16 +49,21 @@ def curve_report(found: Optimal, curve: Curve | NoCurve, table: bool, plain: boo
     ``table`` asks for the places along the curve too (a recorded line does anyway);
     ``plain`` draws with ASCII characters.
     """
-    source, command = safe(found.head.request.source), found.head.request.command
+    source, command = title(found.head), found.head.request.command
     closing = Command("reproduce", command), Sentence(CAUTION)
     if isinstance(curve, NoCurve):
-        return (Sentence(f"{source}: no value curve", True), Sentence(curve.reason), *closing)
-    title = f"{source}: value curve of {described(curve)}"
+        return (
+            Sentence(f"{source}: no value curve", True),
+            *noticed_sentences(found.head),
+            Sentence(curve.reason),
+            *closing,
+        )
     tables = (_places(curve),) if table or curve.recorded else ()
     return (
-        Sentence(title, strong=True),
+        Sentence(f"{source}: value curve of {described(curve)}", strong=True),
+        *noticed_sentences(found.head),
         Sentence(shape(curve)),
-        Facts(_facts(curve)),
+        Facts(_facts(curve, found.head)),
         *((_pieces(curve),) if curve.pieces else ()),
         *_plots(curve, plain),
         *tables,
@@ -97,11 +104,14 @@ def shape(curve: Curve) -> str:
     return f"{word}, as theory demands: {found}, {count(breaks, 'breakpoint')}"
 
 
-def _facts(curve: Curve) -> tuple[tuple[str, str], ...]:
+def _facts(curve: Curve, head: Head) -> tuple[tuple[str, str], ...]:
     low, high = map(number, curve.ends)
-    stands = number(curve.now) if math.isfinite(curve.now) else "no limit"
+    units = units_of(head, curve.number.line)
+    unit = units.price if curve.number.part is Part.COST else units.own
+    stands = amount(curve.now, unit) if math.isfinite(curve.now) else "no limit"
+    objective = amount(curve.objective, units.objective)
     return (
-        ("as it stands", f"{stands}, optimal objective {number(curve.objective)}"),
+        ("as it stands", f"{stands}, optimal objective {objective}"),
         (f"below {low}", BEYOND[curve.below]),
         (f"above {high}", BEYOND[curve.above]),
         ("solved again", _solved_again(curve)),

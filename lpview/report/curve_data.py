@@ -13,7 +13,8 @@ from lpview.prices.curve import Curve, NoCurve, Recorded
 from lpview.prices.number import Part
 from lpview.report.check import verdict
 from lpview.report.curve import marks_at, part_of, price_word
-from lpview.report.json import FORMAT, plain
+from lpview.report.heads import noticed as noticed_anything
+from lpview.report.json import FORMAT, noticed, plain, scope_and_labels
 from lpview.report.names import line_kind_and_name
 from lpview.report.numbers import in_full
 
@@ -57,9 +58,15 @@ def as_json(found: Examination, curve: Curve | NoCurve | None) -> str:
     request, head = found.head.request, found.head
     content = {
         "format": FORMAT,
-        "model": {"name": head.model.name, "sha256": head.sha256, "sense": head.model.sense.value},
+        "model": {
+            "name": head.model.name,
+            "sha256": head.sha256,
+            "sense": head.model.sense.value,
+            **scope_and_labels(head),
+        },
         "curve": _curve(curve) if isinstance(curve, Curve) else None,
         "reason": verdict(found) if curve is None else getattr(curve, "reason", None),
+        **({"noticed": noticed(head)} if noticed_anything(head) else {}),
         "settings": {"source": request.source, "command": request.command},
         "tool": {"lpview": __version__},
     }

@@ -5,12 +5,13 @@ from __future__ import annotations
 import math
 
 from lpview.model import LinearProgram
-from lpview.outcomes import Optimal
+from lpview.outcomes import Head, Optimal
 from lpview.prices.digits import Digits, Spread
 from lpview.prices.results import NoPrices
 from lpview.report.document import Block, Facts, Sentence, Table
 from lpview.report.names import fitted, line_name
 from lpview.report.numbers import count, number, residual
+from lpview.report.units import labelled
 
 
 def digits_blocks(
@@ -45,7 +46,7 @@ def digits_blocks(
             "rounding of this answer and take the numbers of the file as exact."
         ),
     )
-    return (*blocks, *_tables(lp, digits)) if full else blocks
+    return (*blocks, *_tables(found.head, digits)) if full else blocks
 
 
 def _condition(condition: float) -> str:
@@ -72,8 +73,8 @@ def _whole(digits: float) -> str:
     return str(math.floor(digits))
 
 
-def _tables(lp: LinearProgram, digits: Digits) -> tuple[Table, ...]:
-    tables = []
+def _tables(head: Head, digits: Digits) -> tuple[Table, ...]:
+    lp, tables = head.model, []
     for title, names, values, errors in (
         ("digits of the plan", lp.columns, digits.x, digits.x_error),
         ("digits of the dual values", lp.rows, digits.y, digits.y_error),
@@ -82,6 +83,7 @@ def _tables(lp: LinearProgram, digits: Digits) -> tuple[Table, ...]:
             (fitted(name), _whole(float(value)), residual(float(error)))
             for name, value, error in zip(names, values, errors, strict=True)
         )
-        header = ("column" if names is lp.columns else "row", "digits", "estimated error")
-        tables.append(Table(title, header, cells, (False, True, True)))
+        kind, first = ("column", lp.m) if names is lp.columns else ("row", 0)
+        table = Table(title, (kind, "digits", "estimated error"), cells, (False, True, True))
+        tables.append(labelled(head, table, range(first, first + len(names))))
     return tuple(tables)

@@ -6,13 +6,14 @@ import numpy as np
 
 from lpview.marks import Mask
 from lpview.model import LinearProgram
-from lpview.outcomes import Optimal
+from lpview.outcomes import Head, Optimal
 from lpview.prices.interior import ImpliedEqualities, Interior
 from lpview.prices.margin import CAP, Margin
 from lpview.prices.results import NoPrices
 from lpview.report.document import Block, Sentence, Table
 from lpview.report.names import fitted, line_name
 from lpview.report.numbers import count, number, residual
+from lpview.report.units import amount, labelled, units_of
 
 Blocks = tuple[Block, ...]
 
@@ -31,9 +32,9 @@ def interior_blocks(found: Optimal, interior: Interior | NoPrices, full: bool = 
         return (Sentence(f"strictly feasible points were not examined: {interior.reason}"),)
     strict = interior.strict
     plan = (
-        _margin(lp, strict, full)
+        _margin(found.head, strict, full)
         if isinstance(strict, Margin)
-        else _implied(lp, strict, interior.open, full)
+        else _implied(found.head, strict, interior.open, full)
     )
     return (
         *plan,
@@ -55,7 +56,8 @@ def interior_fact(lp: LinearProgram, interior: Interior | NoPrices) -> str:
     return f"no plan; never slack: {_named(lp, strict.lines, False)}"
 
 
-def _margin(lp: LinearProgram, strict: Margin, full: bool) -> Blocks:
+def _margin(head: Head, strict: Margin, full: bool) -> Blocks:
+    lp = head.model
     margin, at_most = number(strict.margin), number(strict.at_most)
     largest = "the largest there is" if margin == at_most else f"and none has more than {at_most}"
     if strict.margin >= CAP * (1 - 1e-9):
@@ -63,6 +65,7 @@ def _margin(lp: LinearProgram, strict: Margin, full: bool) -> Blocks:
     shown = range(lp.n) if full else range(min(lp.n, MOST_LINES))
     cells = tuple((fitted(lp.columns[j]), number(float(strict.x[j]))) for j in shown)
     title = f"the strictly feasible plan: {len(cells)} of {count(lp.n, 'column')}"
+    table = Table(title, ("column", "value"), cells, (False, True))
     return (
         Sentence(
             "A strictly feasible plan exists (the Slater condition holds): one plan satisfies "
@@ -72,11 +75,12 @@ def _margin(lp: LinearProgram, strict: Margin, full: bool) -> Blocks:
             "The margin of a bound is its slack, that of a row its slack over the Euclidean norm "
             f"of its coefficients. Largest scaled violation there: {residual(strict.violation)}."
         ),
-        Table(title, ("column", "value"), cells, (False, True)),
+        labelled(head, table, [lp.m + j for j in shown], units=True),
     )
 
 
-def _implied(lp: LinearProgram, strict: ImpliedEqualities, unsettled: Mask, full: bool) -> Blocks:
+def _implied(head: Head, strict: ImpliedEqualities, unsettled: Mask, full: bool) -> Blocks:
+    lp = head.model
     lines = np.flatnonzero(strict.lines)
     multiplier = np.concatenate([strict.y, strict.z])
     low = np.concatenate([lp.row_lower, lp.lower])
@@ -86,12 +90,13 @@ def _implied(lp: LinearProgram, strict: ImpliedEqualities, unsettled: Mask, full
     cells = tuple(
         (
             line_name(lp, k),
-            f"{relation[k]} {number(float(limit[k]))}",
+            f"{relation[k]} {amount(float(limit[k]), units_of(head, k).own)}",
             number(abs(float(multiplier[k]))),
         )
         for k in shown
     )
     title = f"implied equalities: {len(cells)} of {lines.size}"
+    table = Table(title, ("line", "limit", "multiplier"), cells, (False, True, True))
     noun = "inequality is an implied equality"
     if lines.size > 1:
         noun = "inequalities are implied equalities"
@@ -106,7 +111,7 @@ def _implied(lp: LinearProgram, strict: ImpliedEqualities, unsettled: Mask, full
             f"{residual(strict.misplaced)}, scaled)."
         ),
         *_unsettled(lp, unsettled, full),
-        Table(title, ("line", "limit", "multiplier"), cells, (False, True, True)),
+        labelled(head, table, shown),
     )
 
 

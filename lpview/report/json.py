@@ -11,6 +11,7 @@ from typing import Any
 import numpy as np
 
 from lpview import __version__
+from lpview.labels import Label
 from lpview.model import LinearProgram, Vector
 from lpview.outcomes import (
     BasisRoute,
@@ -58,7 +59,7 @@ def _object(found: Examination) -> dict[str, Any]:
         "certificate": _certificate(found) if isinstance(found, NoOptimum) else None,
         "answer": _answer(answer) if answer else None,
         "reason": found.reason if isinstance(found, NotEstablished) else None,
-        "noticed": _noticed(found.head),
+        "noticed": noticed(found.head),
         "settings": _settings(found.head),
         "tool": {
             "lpview": __version__,
@@ -94,7 +95,14 @@ def _model(head: Head) -> dict[str, Any]:
         "columns": lp.n,
         "nonzeros": int(lp.A.nnz),
         "sense": lp.sense.value,
+        **scope_and_labels(head),
     }
+
+
+def scope_and_labels(head: Head) -> dict[str, str]:
+    """What stands in place of the model, and the labels that came with it, if any."""
+    fields = {"scope": head.notes.scope, "labels_sha256": head.labels.sha256}
+    return {name: text for name, text in fields.items() if text}
 
 
 def _objective(found: Optimal) -> dict[str, Any]:
@@ -104,7 +112,14 @@ def _objective(found: Optimal) -> dict[str, Any]:
         "dual": plain(measured.dual_objective),
         "gap": plain(measured.gap),
         "at_stake": plain(measured.at_stake),
+        **_label(found.head.labels.objective),
     }
+
+
+def _label(known: Label) -> dict[str, str]:
+    """Label, unit and group, as far as there are any."""
+    fields = {"label": known.label, "unit": known.unit, "group": known.group}
+    return {name: text for name, text in fields.items() if text}
 
 
 def _residuals(found: Optimal) -> list[dict[str, Any]]:
@@ -145,7 +160,7 @@ def _constraints(found: Optimal) -> list[dict[str, Any]]:
         "complementarity": _numbers(side.complementarity),
         "flags": _flags(found, 0, lp.m),
     }
-    return _records(fields)
+    return _records(fields, found.head.labels.rows)
 
 
 def _variables(found: Optimal) -> list[dict[str, Any]]:
@@ -160,12 +175,15 @@ def _variables(found: Optimal) -> list[dict[str, Any]]:
         "complementarity": _numbers(side.complementarity),
         "flags": _flags(found, lp.m, lp.m + lp.n),
     }
-    return _records(fields)
+    return _records(fields, found.head.labels.columns)
 
 
-def _records(fields: dict[str, Any]) -> list[dict[str, Any]]:
+def _records(fields: dict[str, Any], labels: Mapping[int, Label]) -> list[dict[str, Any]]:
     names = tuple(fields)
-    return [dict(zip(names, line, strict=True)) for line in zip(*fields.values(), strict=True)]
+    lines = [dict(zip(names, line, strict=True)) for line in zip(*fields.values(), strict=True)]
+    for k, known in labels.items():
+        lines[k].update(_label(known))
+    return lines
 
 
 def _flags(found: Optimal, start: int, stop: int) -> list[list[str]]:
@@ -249,7 +267,8 @@ def _sparse(kind: str, names: tuple[str, ...], values: Vector) -> list[dict[str,
     ]
 
 
-def _noticed(head: Head) -> dict[str, Any]:
+def noticed(head: Head) -> dict[str, Any]:
+    """Everything that reading noticed; remarks only where there are any."""
     notes = head.notes
     return {
         "empty_coefficients": notes.empty_coefficients,
@@ -257,6 +276,7 @@ def _noticed(head: Head) -> dict[str, Any]:
         "rows_without_coefficients": list(notes.rows_without_coefficients),
         "names_alike": [list(pair) for pair in notes.names_alike],
         "most_decimals": dict(notes.most_decimals),
+        **({"remarks": list(notes.remarks)} if notes.remarks else {}),
     }
 
 

@@ -11,17 +11,19 @@ import numpy as np
 from lpview.ledger import Ledger, ledger
 from lpview.marks import Flag
 from lpview.model import LinearProgram
-from lpview.outcomes import Examination, Optimal
+from lpview.outcomes import Examination, Head, Optimal
 from lpview.prices import LinePrices
 from lpview.proof.exact import contradicts, with_exact_zeros
 from lpview.proof.results import Proof, ProvedOptimal
 from lpview.report import asking
 from lpview.report.check import CAUTION, report, verdict
 from lpview.report.document import Block, Command, Document, Facts, Sentence, Table
+from lpview.report.heads import noticed_sentences, title
 from lpview.report.ledger_words import meaning
-from lpview.report.names import fitted, safe
+from lpview.report.names import fitted
 from lpview.report.numbers import count, number, residual
 from lpview.report.proof import exact_sentences, proof_verdict
+from lpview.report.units import Units, amount, in_units, label_of, labelled, units_of
 
 NONE: Mapping[int, LinePrices] = MappingProxyType({})
 """No prices were worked out."""
@@ -55,7 +57,8 @@ def ledger_report(
         if isinstance(proof, ProvedOptimal):
             found = with_exact_zeros(found, proof)
     return (
-        Sentence(f"{safe(head.request.source)}: {words}", strong=True),
+        Sentence(f"{title(head)}: {words}", strong=True),
+        *noticed_sentences(head),
         *([Sentence(problem)] if problem else []),
         *(
             block
@@ -88,8 +91,8 @@ def ledger_blocks(
     """The ledger of one line: its terms, what they add up to, what that means."""
     entry = ledger(found, line)
     return (
-        _terms(found.head.model, entry, full),
-        Facts(_totals(entry)),
+        _terms(found.head, entry, full),
+        Facts(_totals(entry, units_of(found.head, line))),
         *map(Sentence, meaning(found, entry, prices)),
         *map(Sentence, _exactly(found, line, proof)),
     )
@@ -101,27 +104,31 @@ def _exactly(found: Optimal, line: int, proof: Proof | None) -> tuple[str, ...]:
     return exact_sentences(found.head.model, proof, line)
 
 
-def heading(entry: Ledger) -> str:
-    """The line with its limits, as ``row heat <= 300`` or ``column tomato 0 to 40``."""
+def heading(entry: Ledger, head: Head) -> str:
+    """The line with its limits: ``row heat (heating) <= 300 kWh``, ``column tomato 0 to 40``."""
     kind = "row" if entry.is_row else "column"
-    return f"{kind} {fitted(entry.name)} {limits(entry)}"
+    label = label_of(head, entry.line)
+    name = fitted(entry.name) + (f" ({fitted(label.label)})" if label.label else "")
+    return f"{kind} {name} {limits(entry, units_of(head, entry.line).own)}"
 
 
-def limits(entry: Ledger) -> str:
-    """Sides or bounds: ``<= 300``, ``>= 0``, ``= 5``, ``0 to 40``, ``without limits``."""
+def limits(entry: Ledger, unit: str = "") -> str:
+    """Sides or bounds: ``<= 300 kWh``, ``>= 0``, ``= 5``, ``0 to 40``, ``without limits``."""
     low, high = entry.lower, entry.upper
     if low == high and not entry.paired:
-        return f"= {number(low)}"
+        return f"= {amount(low, unit)}"
     if math.isinf(low) and math.isinf(high):
         return "without sides" if entry.is_row else "free"
     if math.isinf(low):
-        return f"<= {number(high)}"
-    return f">= {number(low)}" if math.isinf(high) else f"{number(low)} to {number(high)}"
+        return f"<= {amount(high, unit)}"
+    if math.isinf(high):
+        return f">= {amount(low, unit)}"
+    return f"{number(low)} to {amount(high, unit)}"
 
 
-def _terms(lp: LinearProgram, entry: Ledger, full: bool) -> Table:
-    terms = entry.terms
-    names = lp.columns if entry.is_row else lp.rows
+def _terms(head: Head, entry: Ledger, full: bool) -> Table:
+    lp, terms = head.model, entry.terms
+    names, first = (lp.columns, lp.m) if entry.is_row else (lp.rows, 0)
     total = terms.product.size
     shown = total if full else min(total, MOST_TERMS)
     rows = [
@@ -142,28 +149,32 @@ def _terms(lp: LinearProgram, entry: Ledger, full: bool) -> Table:
         if entry.is_row
         else ("row", "coefficient", "dual value", "coefficient x dual value")
     )
-    begin = "" if entry.is_row else f", cost {number(entry.cost)} less"
-    title = f"{heading(entry)}{begin}: {count(total, 'term')}"
-    return Table(title, header, tuple(rows), (False, True, True, True))
+    cost = amount(entry.cost, units_of(head, entry.line).price)
+    begin = "" if entry.is_row else f", cost {cost} less"
+    words = f"{heading(entry, head)}{begin}: {count(total, 'term')}"
+    table = Table(words, header, tuple(rows), (False, True, True, True))
+    return labelled(head, table, [first + k for k in terms.partner[:shown].tolist()])
 
 
-def _totals(entry: Ledger) -> tuple[tuple[str, str], ...]:
-    product = residual(entry.complementarity)
+def _totals(entry: Ledger, units: Units) -> tuple[tuple[str, str], ...]:
+    product = in_units(residual(entry.complementarity), units.objective)
+    value, slack = amount(entry.value, units.own), amount(entry.slack, units.own)
+    price = amount(entry.price, units.price)
     flags = ", ".join(flag.value for flag in entry.flags) or "none"
     if entry.status is None:
         flags += f" ({Flag.DEGENERATE.value} is not known without a basis)"
     if entry.is_row:
         numbers = (
-            ("row value", number(entry.value)),
-            ("slack", number(entry.slack)),
-            ("dual value", number(entry.price)),
+            ("row value", value),
+            ("slack", slack),
+            ("dual value", price),
             ("slack times dual value", product),
         )
     else:
         numbers = (
-            ("reduced cost", number(entry.price)),
-            ("value", number(entry.value)),
-            ("distance to its nearest bound", number(entry.slack)),
+            ("reduced cost", price),
+            ("value", value),
+            ("distance to its nearest bound", slack),
             ("distance times reduced cost", product),
         )
     return (*numbers, ("flags", flags))

@@ -17,8 +17,9 @@ from lpview.ledger import Ledger
 from lpview.marks import FAULTS, Flag
 from lpview.outcomes import Optimal
 from lpview.prices import LinePrices
-from lpview.report.numbers import count, number
+from lpview.report.numbers import count
 from lpview.report.price_words import price_sentences
+from lpview.report.units import Units, amount, units_of
 
 
 def meaning(found: Optimal, entry: Ledger, prices: LinePrices | None = None) -> tuple[str, ...]:
@@ -33,11 +34,14 @@ def meaning(found: Optimal, entry: Ledger, prices: LinePrices | None = None) -> 
         return ("The check failed elsewhere, so these numbers are the answer's claim only.",)
     if entry.priced and _is_left_over(entry):
         return ("Within the tolerance only: it has a price at a limit that it does not sit at.",)
+    units = units_of(found.head, entry.line)
     if prices is not None:
-        place = _row_place(entry) if entry.is_row else f"{_place(entry)}: {_account(entry)}."
+        place = _row_place(entry, units)
+        if not entry.is_row:
+            place = f"{_place(entry, units)}: {_account(entry, units)}."
         has_end = np.isfinite(entry.slack) or not entry.is_row
         return (place, *(price_sentences(found, entry.line, prices) if has_end else ()))
-    words = _row(entry) if entry.is_row else _column(entry)
+    words = (_row if entry.is_row else _column)(entry, units)
     return (words, _certainty(found)) if entry.priced else (words,)
 
 
@@ -54,22 +58,22 @@ def _is_left_over(entry: Ledger) -> bool:
     return entry.room or bool(np.isinf(end))
 
 
-def _row(entry: Ledger) -> str:
-    place = _row_place(entry)
+def _row(entry: Ledger, units: Units) -> str:
+    place = _row_place(entry, units)
     if np.isinf(entry.slack) or (entry.room and not entry.priced):
         return place
     if entry.priced:
         where = f"on its {_end(entry)}" if entry.paired else "on its right-hand side"
-        return f"{place} {_steps(entry, where)}"
+        return f"{place} {_steps(entry, where, units)}"
     return f"{place.removesuffix('.')}, without a price of its own. {_without_price(entry)}"
 
 
-def _row_place(entry: Ledger) -> str:
+def _row_place(entry: Ledger, units: Units) -> str:
     """Where a row stands."""
     if np.isinf(entry.slack):
         return "It has no side, so it cannot hold the plan back."
     if entry.room and not entry.priced:
-        return f"It does not hold the plan back: {number(entry.slack)} to spare."
+        return f"It does not hold the plan back: {amount(entry.slack, units.own)} to spare."
     if not entry.paired:
         return "It is an equality."
     if entry.priced:
@@ -77,40 +81,41 @@ def _row_place(entry: Ledger) -> str:
     return f"It is used up to its {_nearest(entry)}."
 
 
-def _column(entry: Ledger) -> str:
-    account = _account(entry)
+def _column(entry: Ledger, units: Units) -> str:
+    place, account = _place(entry, units), _account(entry, units)
     if not entry.priced:
-        words = f"{_place(entry)}: {account}."
+        words = f"{place}: {account}."
         return words if entry.room else f"{words} {_without_price(entry)}"
     if not entry.paired:
-        return f"{_place(entry)}: {account}. {_steps(entry, 'on that value')}"
+        return f"{place}: {account}. {_steps(entry, 'on that value', units)}"
     if _is_out(entry):
-        return f"It is out of the plan: {account}. {_forced(entry)}"
-    return f"{_place(entry)}: {account}. {_steps(entry, f'on that {_end(entry)}')}"
+        return f"It is out of the plan: {account}. {_forced(entry, units)}"
+    return f"{place}: {account}. {_steps(entry, f'on that {_end(entry)}', units)}"
 
 
-def _account(entry: Ledger) -> str:
+def _account(entry: Ledger, units: Units) -> str:
+    cost, used, price = (
+        amount(value, units.price) for value in (entry.cost, entry.used, entry.price)
+    )
     if not entry.priced:
         return (
-            f"its cost {number(entry.cost)} and what it uses at the dual values, "
-            f"{number(entry.used)}, are equal within the zero tolerance"
+            f"its cost {cost} and what it uses at the dual values, {used}, are equal within the "
+            "zero tolerance"
         )
-    return (
-        f"its cost {number(entry.cost)} less what it uses at the dual values, "
-        f"{number(entry.used)}, is {number(entry.price)}"
-    )
+    return f"its cost {cost} less what it uses at the dual values, {used}, is {price}"
 
 
-def _place(entry: Ledger) -> str:
+def _place(entry: Ledger, units: Units) -> str:
     """Where a column stands."""
     if not entry.paired:
-        return f"It is fixed at {number(entry.lower)}"
+        return f"It is fixed at {amount(entry.lower, units.own)}"
+    value = amount(entry.value, units.own)
     if entry.room:
-        return f"It is in the plan at {number(entry.value)}, where no bound holds it"
+        return f"It is in the plan at {value}, where no bound holds it"
     if _is_out(entry):
         return "It is out of the plan"
     end = _end(entry) if entry.priced else _nearest(entry)
-    return f"It is in the plan at its {end}, {number(entry.value)}"
+    return f"It is in the plan at its {end}, {value}"
 
 
 def _is_out(entry: Ledger) -> bool:
@@ -130,21 +135,22 @@ def _nearest(entry: Ledger) -> str:
     return f"lower {kind}" if entry.below <= entry.above else f"upper {kind}"
 
 
-def _steps(entry: Ledger, where: str) -> str:
+def _steps(entry: Ledger, where: str, units: Units) -> str:
     """What one unit of a limit is worth; the price names the limit by its sign."""
     looser, tighter = ("less", "more") if entry.named_lower else ("more", "less")
-    size = number(abs(entry.price))
+    size, one = amount(abs(entry.price), units.objective), units.one
     return (
-        f"One unit {looser} {where} improves the objective by at most {size}; one unit "
+        f"One {one} {looser} {where} improves the objective by at most {size}; one {one} "
         f"{tighter} worsens it by at least {size}, or leaves no plan."
     )
 
 
-def _forced(entry: Ledger) -> str:
+def _forced(entry: Ledger, units: Units) -> str:
     below = " below 0" if not entry.named_lower else ""
+    size = amount(abs(entry.price), units.objective)
     return (
-        f"Each unit of it that is forced in{below} worsens the objective by at least "
-        f"{number(abs(entry.price))}, or leaves no plan."
+        f"Each {units.one} of it that is forced in{below} worsens the objective by at least "
+        f"{size}, or leaves no plan."
     )
 
 

@@ -15,6 +15,7 @@ from lpview.report.document import Document, Facts, Sentence, Table
 from lpview.report.names import fitted
 from lpview.report.numbers import count, number
 from lpview.report.prices import closing, opening, plan_dimension
+from lpview.report.units import amount, labelled, units_of
 from lpview.run import Claim
 
 MOST_COLUMNS = 20
@@ -78,7 +79,8 @@ def _table(
     what = "variables that are not the same in all optimal plans"
     title = f"{what}: {len(shown)} of {len(moving)} shown"
     header = ("column", "value in the answer", "least", "greatest")
-    return Table(title, header, rows, (False, True, True, True))
+    table = Table(title, header, rows, (False, True, True, True))
+    return labelled(found.head, table, shown, units=True)
 
 
 def end_sentence(found: Optimal, line: int, greatest: bool, end: float, with_ray: bool) -> str:
@@ -86,7 +88,8 @@ def end_sentence(found: Optimal, line: int, greatest: bool, end: float, with_ray
     lp, word = found.head.model, "greatest" if greatest else "least"
     name = fitted(lp.columns[line - lp.m])
     if np.isfinite(end):
-        return f"column {name} has its {word} value of all optimal plans here: {number(end)}" + (
+        value = amount(end, units_of(found.head, line).own)
+        return f"column {name} has its {word} value of all optimal plans here: {value}" + (
             "; there is no ray" if with_ray else ""
         )
     return (

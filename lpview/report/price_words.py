@@ -13,6 +13,7 @@ from dataclasses import dataclass
 from lpview.outcomes import Optimal
 from lpview.prices import LinePrices, Move, Moves, Then, ZeroSlack
 from lpview.report.numbers import number
+from lpview.report.units import NO_UNITS, Units, amount, units_of
 
 AFTERWARDS = {
     Then.RATE_CHANGES: "then the rate changes",
@@ -31,9 +32,10 @@ def price_sentences(found: Optimal, line: int, prices: LinePrices) -> tuple[str,
     about = _about(found, line)
     sentences = [_uniqueness(about, prices)]
     for name, moves in _sides(about, prices):
-        sentences.append(_moves_sentence(about, name, moves))
+        sentences.append(_moves_sentence(about, name, moves, about.units))
     if prices.cost is not None:
-        sentences.append(_moves_sentence(about, "its cost", prices.cost))
+        in_price = Units(about.units.price, about.units.objective)
+        sentences.append(_moves_sentence(about, "its cost", prices.cost, in_price))
     sentences += _zero_slack(about, prices)
     sentences += _values(about, prices)
     return tuple(sentences)
@@ -48,6 +50,7 @@ class _About:
     lower_first: bool
     price: float
     sign: float
+    units: Units
 
     @property
     def end(self) -> str:
@@ -65,33 +68,35 @@ def _about(found: Optimal, line: int) -> _About:
         lower_first=bool(side.below[k] <= side.above[k]),
         price=float(side.price[k]) if found.marks.priced[line] else 0.0,
         sign=lp.sense.sign,
+        units=units_of(found.head, line),
     )
 
 
 def _uniqueness(about: _About, prices: LinePrices) -> str:
-    noun = "dual value" if about.is_row else "reduced cost"
+    noun, unit = "dual value" if about.is_row else "reduced cost", about.units.price
     if prices.is_unique:
-        return f"Its {noun} {number(prices.least)} is the only one."
+        return f"Its {noun} {amount(prices.least, unit)} is the only one."
     if not prices.price_found:
+        seen = f"{number(prices.least)} and {amount(prices.greatest, unit)}"
         return (
-            f"Its {noun} is not the only one; {number(prices.least)} and "
-            f"{number(prices.greatest)} were seen, and the solver gave no usable answer beyond."
+            f"Its {noun} is not the only one; {seen} were seen, and the solver gave no usable "
+            "answer beyond."
         )
     return (
-        f"Its {noun} is {any_number(prices.least, prices.greatest)}; "
+        f"Its {noun} is {any_number(prices.least, prices.greatest, unit)}; "
         f"the answer shown has {number(about.price)}."
     )
 
 
-def any_number(least: float, greatest: float) -> str:
-    """``any number from 0 to 3``, also where an end is infinite."""
+def any_number(least: float, greatest: float, unit: str = "") -> str:
+    """``any number from 0 to 3 kWh``, also where an end is infinite."""
     if math.isinf(least) and math.isinf(greatest):
         return "any number at all"
     if math.isinf(greatest):
-        return f"any number from {number(least)} up, without limit"
+        return f"any number from {amount(least, unit)} up, without limit"
     if math.isinf(least):
-        return f"any number from {number(greatest)} down, without limit"
-    return f"any number from {number(least)} to {number(greatest)}"
+        return f"any number from {amount(greatest, unit)} down, without limit"
+    return f"any number from {number(least)} to {amount(greatest, unit)}"
 
 
 def _sides(about: _About, prices: LinePrices) -> list[tuple[str, Moves]]:
@@ -104,18 +109,19 @@ def _sides(about: _About, prices: LinePrices) -> list[tuple[str, Moves]]:
     return [(name, moves) for name, moves in ordered if moves is not None]
 
 
-def _moves_sentence(about: _About, name: str, moves: Moves) -> str:
+def _moves_sentence(about: _About, name: str, moves: Moves, units: Units) -> str:
     up, down = moves.up, moves.down
     if all(move.rate == 0 and move.then is Then.NEVER for move in (up, down)):
         return f"No move of {name} changes anything."
-    first = move_clause(up, True, about.sign, f" on {name}")
-    return f"{first[0].upper()}{first[1:]}; {move_clause(down, False, about.sign)}."
+    first = move_clause(up, True, about.sign, f" on {name}", units)
+    return f"{first[0].upper()}{first[1:]}; {move_clause(down, False, about.sign, '', units)}."
 
 
-def move_clause(move: Move, up: bool, sign: float, where: str = "") -> str:
+def move_clause(move: Move, up: bool, sign: float, where: str = "", units: Units = NO_UNITS) -> str:
     """What moving a number one way is worth, how far, and what happens then.
 
-    ``sign`` is `lpview.model.Sense.sign`, ``where`` names the number.
+    ``sign`` is `lpview.model.Sense.sign`, ``where`` names the number, which is counted in
+    ``units``.
     """
     way = "more" if up else "less"
     if math.isinf(move.rate):
@@ -123,25 +129,26 @@ def move_clause(move: Move, up: bool, sign: float, where: str = "") -> str:
             return f"any {way}{where} lets the objective improve without limit"
         return f"any {way}{where} leaves no plan"
     change = move.rate if up else -move.rate
-    return f"each unit {way}{where} {effect(change, sign)}, {_reach(move)}"
+    worth = effect(change, sign, units.objective)
+    return f"each {units.one} {way}{where} {worth}, {_reach(move, units)}"
 
 
-def effect(change: float, sign: float) -> str:
+def effect(change: float, sign: float, unit: str = "") -> str:
     """What a change of the objective is to the person who optimizes it."""
     if change == 0:
         return "changes nothing"
     verb = "improves" if sign * change < 0 else "worsens"
-    return f"{verb} the objective by {number(abs(change))}"
+    return f"{verb} the objective by {amount(abs(change), unit)}"
 
 
-def _reach(move: Move) -> str:
+def _reach(move: Move, units: Units) -> str:
     if move.then is Then.NEVER:
         return "however many"
-    units = f"{number(move.distance)} unit" + ("" if move.distance == 1 else "s")
+    far = units.many(move.distance)
     if move.then is Then.NOT_FOUND:
-        surely = f"surely for {units}, but " if move.distance > 0 else "but "
+        surely = f"surely for {far}, but " if move.distance > 0 else "but "
         return f"{surely}how far that holds was not found out"
-    return f"for {units}, {AFTERWARDS[move.then]}"
+    return f"for {far}, {AFTERWARDS[move.then]}"
 
 
 def _zero_slack(about: _About, prices: LinePrices) -> list[str]:
@@ -170,5 +177,7 @@ def _values(about: _About, prices: LinePrices) -> list[str]:
         return ["The solver gave no usable answer on how far its value can go in optimal plans."]
     what = "its row value" if about.is_row else "it"
     if least != greatest:
-        return [f"Over all optimal plans {what} is {any_number(least, greatest)}."]
-    return [] if held or about.is_row else [f"It is {number(least)} in every optimal plan."]
+        return [f"Over all optimal plans {what} is {any_number(least, greatest, about.units.own)}."]
+    if held or about.is_row:
+        return []
+    return [f"It is {amount(least, about.units.own)} in every optimal plan."]

@@ -16,11 +16,13 @@ from lpview.prices import LinePrices, Move, Moves, NoPrices
 from lpview.report import asking
 from lpview.report.check import CAUTION, provenance, shape, verdict
 from lpview.report.document import Block, Command, Document, Facts, Sentence, Table
+from lpview.report.heads import noticed, title
 from lpview.report.interior import interior_fact
 from lpview.report.ledger import heading, line_options
-from lpview.report.names import fitted, line_name, safe
+from lpview.report.names import fitted, line_name
 from lpview.report.numbers import count, number
 from lpview.report.price_words import price_sentences
+from lpview.report.units import amount, labelled, price_header, units_of
 
 MOST_ROWS = 8
 """Rows of each table unless the full report is asked for."""
@@ -48,7 +50,7 @@ def lines_report(priced: Priced, lines: Sequence[int]) -> Document:
     found = _asking(priced.found, lines)
     blocks: list[Block] = []
     for line in lines:
-        blocks.append(Sentence(heading(ledger(priced.found, line)), strong=True))
+        blocks.append(Sentence(heading(ledger(found, line), found.head), strong=True))
         known = priced.lines.get(line)
         words = ("Not examined.",) if known is None else price_sentences(priced.found, line, known)
         blocks += map(Sentence, words)
@@ -70,11 +72,11 @@ def _asking(found: Optimal, lines: Sequence[int]) -> Optimal:
 
 
 def opening(found: Optimal) -> tuple[Block, ...]:
-    """Verdict and shape, with which every report on prices begins."""
+    """Verdict, shape and warnings, with which every report on prices begins."""
     head = found.head
     return (
-        Sentence(f"{safe(head.request.source)}: {verdict(found)}", strong=True),
-        Sentence(shape(head.model)),
+        Sentence(f"{title(head)}: {verdict(found)}", strong=True),
+        Sentence("; ".join([shape(head.model), *noticed(head)])),
     )
 
 
@@ -145,17 +147,17 @@ def _tables(priced: Priced, full: bool) -> tuple[Table, ...]:
     several = widest(priced.intervals, lp.m)
     single = worth_most(priced.found, priced.not_unique)
     tables = []
-    for title, rows in (
+    for about, rows in (
         ("rows whose dual value is not unique, the widest first", several),
         ("rows whose dual value is unique, by |dual value times right-hand side|", single),
     ):
         shown = [line for line in rows if line in priced.lines][:most]
         if shown:
-            tables.append(_table(priced, f"{title}: {len(shown)} of {len(rows)}", shown))
+            tables.append(_table(priced, f"{about}: {len(shown)} of {len(rows)}", shown))
     return tuple(tables)
 
 
-def _table(priced: Priced, title: str, rows: Sequence[int]) -> Table:
+def _table(priced: Priced, about: str, rows: Sequence[int]) -> Table:
     found = priced.found
     header = ("row", "dual value", "up", "how far", "then", "down", "how far", "then")
     cells = []
@@ -171,7 +173,8 @@ def _table(priced: Priced, title: str, rows: Sequence[int]) -> Table:
             )
         )
     numeric = (False, True, True, True, False, True, True, False)
-    return Table(title, header, tuple(cells), numeric)
+    table = Table(about + price_header(found.head), header, tuple(cells), numeric)
+    return labelled(found.head, table, rows, units=True)
 
 
 def _move_cells(move: Move) -> tuple[str, str, str]:
@@ -250,6 +253,7 @@ def _widest_words(priced: Priced, full: bool) -> str:
     for line in rows if full else rows[:MOST_IN_CHECK]:
         moves = active(priced.found, line, priced.lines[line])
         if moves is not None:
-            up, down = number(moves.up.rate), number(moves.down.rate)
+            unit = units_of(priced.found.head, line).price
+            up, down = number(moves.up.rate), amount(moves.down.rate, unit)
             words.append(f"{line_name(lp, line)} up {up} and down {down}")
     return "; ".join(words) or "none"

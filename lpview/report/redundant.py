@@ -5,13 +5,14 @@ from __future__ import annotations
 from collections.abc import Sequence
 
 from lpview.model import LinearProgram
-from lpview.outcomes import Optimal
+from lpview.outcomes import Head, Optimal
 from lpview.prices.redundant import Need, Redundant, RowSide
 from lpview.prices.results import NoPrices
 from lpview.report.document import Block, Sentence, Table
 from lpview.report.interior import MOST_LINES
 from lpview.report.names import fitted
 from lpview.report.numbers import count, number
+from lpview.report.units import labelled
 
 
 def redundant_blocks(
@@ -25,12 +26,12 @@ def redundant_blocks(
     blocks: list[Block] = [Sentence(_examined(redundant))]
     if unreached:
         blocks += (
-            _sides(lp, "no feasible plan reaches", unreached, full),
+            _sides(found.head, "no feasible plan reaches", unreached, full),
             Sentence("The sides that no feasible plan reaches can all be left out at once."),
         )
     if implied:
         blocks += (
-            _sides(lp, "implied by the other lines", implied, full),
+            _sides(found.head, "implied by the other lines", implied, full),
             Sentence(
                 "Each implied side can be left out alone, but perhaps not all at once: of two "
                 "equal rows each is implied by the other."
@@ -56,8 +57,8 @@ def _examined(redundant: Redundant) -> str:
     return f"{count(done, 'side')} of inequality rows examined: {found}."
 
 
-def _sides(lp: LinearProgram, what: str, sides: Sequence[RowSide], full: bool) -> Table:
-    shown = sides if full else sides[:MOST_LINES]
+def _sides(head: Head, what: str, sides: Sequence[RowSide], full: bool) -> Table:
+    lp, shown = head.model, sides if full else sides[:MOST_LINES]
     cells = tuple(
         (
             fitted(lp.rows[side.row]),
@@ -70,7 +71,8 @@ def _sides(lp: LinearProgram, what: str, sides: Sequence[RowSide], full: bool) -
     )
     header = ("row", "relation", "side", "nearest row value", "distance")
     title = f"{what}: {len(cells)} of {len(sides)}"
-    return Table(title, header, cells, (False, False, True, True, True))
+    table = Table(title, header, cells, (False, False, True, True, True))
+    return labelled(head, table, [side.row for side in shown], units=True)
 
 
 def _side_name(lp: LinearProgram, side: RowSide) -> str:

@@ -13,6 +13,7 @@ from lpview.report.names import fitted
 from lpview.report.numbers import in_full, number
 from lpview.report.price_words import AFTERWARDS, effect
 from lpview.report.prices import closing, opening
+from lpview.report.units import labelled, objective_unit
 
 Moves = Sequence[tuple[int, float]]
 """Rows, numbered from 0, and by how much the right-hand side of each moves."""
@@ -30,8 +31,9 @@ def asking_moves(found: Optimal, moves: Moves) -> Optimal:
 
 def together_report(found: Optimal, together: Together) -> Document:
     """What the moves are worth together, and what each is worth alone."""
-    lp = found.head.model
-    header = ("row", "amount", "moved", "change for each unit of t, alone")
+    lp, unit = found.head.model, objective_unit(found.head)
+    in_unit = f" in {unit}" if unit else ""
+    header = ("row", "amount", "moved", f"change for each unit of t, alone{in_unit}")
     cells = tuple(
         (
             fitted(lp.rows[alone.row]),
@@ -41,11 +43,12 @@ def together_report(found: Optimal, together: Together) -> Document:
         )
         for alone in together.separate
     )
+    table = Table("each row moved alone", header, cells, (False, True, False, True))
     return (
         *opening(found),
-        Sentence(_together(together, lp.sense.sign)),
-        Sentence(_alone(together, lp.sense.sign)),
-        Table("each row moved alone", header, cells, (False, True, False, True)),
+        Sentence(_together(together, lp.sense.sign, unit)),
+        Sentence(_alone(together, lp.sense.sign, unit)),
+        labelled(found.head, table, [alone.row for alone in together.separate], units=True),
         *closing(found),
     )
 
@@ -56,15 +59,14 @@ def _side(found: Optimal, alone: Alone) -> str:
     return "upper side" if alone.is_high else "lower side"
 
 
-def _together(together: Together, sign: float) -> str:
+def _together(together: Together, sign: float, unit: str) -> str:
     if math.isnan(together.rate):
         return "What these rows are worth moved together was not found out."
     if math.isinf(together.rate):
         them = "it leaves" if len(together.separate) == 1 else "together they leave"
         return f"Moved by any part of these amounts, {them} no plan."
-    change = (
-        f"Moved together by t times these amounts, each unit of t {effect(together.rate, sign)}"
-    )
+    worth = effect(together.rate, sign, unit)
+    change = f"Moved together by t times these amounts, each unit of t {worth}"
     if together.then is Then.NEVER:
         return f"{change}, however large t is."
     if together.then is Then.NOT_FOUND:
@@ -72,7 +74,7 @@ def _together(together: Together, sign: float) -> str:
     return f"{change}, for t up to {number(together.distance)}, {AFTERWARDS[together.then]}."
 
 
-def _alone(together: Together, sign: float) -> str:
+def _alone(together: Together, sign: float, unit: str) -> str:
     """What adding up the one-row rates would have said."""
     rates = [alone.rate for alone in together.separate]
     if len(rates) == 1:
@@ -84,6 +86,6 @@ def _alone(together: Together, sign: float) -> str:
     if abs(added - together.rate) <= near:
         return "The one-row rates add up to the same."
     return (
-        f"The one-row rates would have said that each unit of t {effect(added, sign)}: no "
+        f"The one-row rates would have said that each unit of t {effect(added, sign, unit)}: no "
         "single dual solution attains them all."
     )

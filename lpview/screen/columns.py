@@ -9,16 +9,17 @@ rates where there is not room for both.
 
 from __future__ import annotations
 
-from collections.abc import Callable
+from collections.abc import Callable, Mapping, Sequence
 from dataclasses import dataclass, replace
 
 import numpy as np
 from numpy.typing import NDArray
 
 from lpview.kkt import Side
+from lpview.labels import Label
 from lpview.model import Vector
 from lpview.outcomes import Optimal
-from lpview.report.names import safe, width
+from lpview.report.names import fitted, safe, width
 from lpview.report.numbers import fitted_number, number
 from lpview.screen.price_book import DOWN, DOWN_FAR, UP, UP_FAR, PriceBook
 
@@ -30,6 +31,12 @@ SIDES = 24
 """Cells of a pair of sides."""
 NARROWEST_NAME, ENOUGH_NAME, WIDEST_NAME = 18, 30, 60
 """Cells that names get at least, before columns that matter less, and at most."""
+LEAST_NAME = 12
+"""Cells that names keep beside a unit."""
+LEAST_LABEL = 5
+"""Cells below which a longer label is left out."""
+UNIT, WIDEST_UNIT = "unit", 8
+"""Head of the units, and cells that they get at most."""
 GAP = 2
 """Cells between columns."""
 
@@ -60,6 +67,8 @@ class TableColumns:
     """Left of the spine, the last to go first."""
     prices: tuple[Column, ...]
     """Right of the spine, the last to go first."""
+    labels: Mapping[int, Label]
+    """What is known about lines beside their names."""
 
 
 @dataclass(frozen=True)
@@ -74,6 +83,8 @@ class Layout:
     """Columns right of the spine, before the link column."""
     is_link_apart: bool
     """Whether the link column has room of its own; else it takes that of the rates."""
+    unit: int = 0
+    """Cells of the unit beside the first number; 0 where there is none or no room."""
 
 
 _STEPS = (
@@ -89,11 +100,45 @@ _STEPS = (
 with the cells that it takes and those that it leaves for names."""
 
 
-def layout(width: int, cursor: int, spine: int, longest: int) -> Layout:
+@dataclass(frozen=True)
+class Widths:
+    """Cells that the texts of a table's lines take at most."""
+
+    name: int
+    """Names."""
+    with_label: int
+    """Names with their labels."""
+    unit: int
+    """Units; 0 where there are none."""
+
+    def joined(self, other: Widths) -> Widths:
+        """Room for both."""
+        return Widths(
+            max(self.name, other.name),
+            max(self.with_label, other.with_label),
+            max(self.unit, other.unit),
+        )
+
+
+def widths_of(names: Sequence[str], labels: Mapping[int, Label]) -> Widths:
+    """What the lines of one table take."""
+    longest = max((width(name) for name in names), default=1)
+    named = [
+        width(safe(names[k])) + GAP + width(safe(known.label))
+        for k, known in labels.items()
+        if known.label
+    ]
+    units = [width(safe(known.unit)) for known in labels.values() if known.unit]
+    unit = min(max(units), WIDEST_UNIT) if units else 0
+    return Widths(longest, max(named, default=longest), max(unit, len(UNIT)) if units else 0)
+
+
+def layout(width: int, cursor: int, spine: int, widths: Widths) -> Layout:
     """Fit columns into ``width`` cells, the more important ones first.
 
-    ``longest`` is the width of the longest name.
+    Units and labels take what is left when nothing else fits: first to go, as width shrinks.
     """
+    longest = widths.name
     left = width - cursor - spine - 3 * (GAP + NUMBER) - GAP
     primal, prices, is_apart = 1, 1, True
     for *chosen, cells, enough in _STEPS:
@@ -101,8 +146,23 @@ def layout(width: int, cursor: int, spine: int, longest: int) -> Layout:
             break
         primal, prices, is_apart = chosen[0], chosen[1], bool(chosen[2])
         left -= cells
+    unit = widths.unit
+    if unit and left - (1 + unit) >= max(min(longest, ENOUGH_NAME), LEAST_NAME):
+        left -= 1 + unit
+    else:
+        unit = 0
+    longest = max(longest, widths.with_label)
     name = max(min(left, WIDEST_NAME, max(longest, NARROWEST_NAME)), 1)
-    return Layout(name, primal, prices, is_apart)
+    return Layout(name, primal, prices, is_apart, unit)
+
+
+def named(name: str, label: str, cells: int, more: str) -> str:
+    """A safe name in at most so many cells, and its label after it where there is room."""
+    text = squeezed(name, cells, more)
+    room = cells - width(text) - GAP
+    if not label or room < min(width(safe(label)), LEAST_LABEL):
+        return text
+    return text + " " * GAP + fitted(label, room, more)
 
 
 def squeezed(name: str, cells: int, more: str) -> str:
@@ -138,6 +198,7 @@ def constraint_columns(found: Optimal, book: PriceBook) -> TableColumns:
             _pair("sides", lp.row_lower, lp.row_upper, lp.is_equality),
         ),
         _price_side("dual value", side, book, 0),
+        found.head.labels.rows,
     )
 
 
@@ -152,6 +213,7 @@ def variable_columns(found: Optimal, book: PriceBook) -> TableColumns:
             _pair("bounds", lp.lower, lp.upper, lp.is_fixed),
         ),
         _price_side("reduced cost", side, book, lp.m),
+        found.head.labels.columns,
     )
 
 

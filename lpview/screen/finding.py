@@ -29,7 +29,8 @@ class FindingScreen(LinkedScreen):
 
     def action_search(self) -> None:
         """Ask for words; the table follows while they are typed."""
-        self.ask("search", "words of a name", self.leading.view.search)
+        view = self.leading.view
+        self.ask("search", f"words of a {view.searched}", view.search)
 
     def action_go_to(self) -> None:
         """Ask for a line number."""
@@ -104,7 +105,7 @@ class FindingScreen(LinkedScreen):
         if purpose == "search":
             view = self.leading.view
             found = count(view.order.size, "line")
-            self.say(f"{found} with {view.search} in the name" if text.strip() else "")
+            self.say(f"{found} with {view.search} in the {view.searched}" if text.strip() else "")
         elif text.strip().isdigit():
             self.leading.fold(False)
             self.leading.move_to(int(text) - 1)

@@ -39,7 +39,13 @@ KEYS = (
     Key("full_stop", "next_flagged", "next flagged line", MOVE),
     Key("comma", "previous_flagged", "previous flagged line", MOVE),
     Key("g", "go_to", "go to a line by its number", MOVE),
-    Key("slash", "search", "search names in this table: several words, any case", FIND, "Search"),
+    Key(
+        "slash",
+        "search",
+        "search names and labels in this table: several words, any case",
+        FIND,
+        "Search",
+    ),
     *(
         Key(str(number), f"filter('{flag.name}')", f"only lines with: {flag.value}", FIND)
         for number, flag in enumerate(FILTER_FLAGS, start=1)

@@ -15,7 +15,9 @@ from lpview.report.ledger_words import meaning
 from lpview.report.names import fitted, width
 from lpview.report.numbers import fitted_number
 from lpview.report.proof import exact_sentences
-from lpview.screen.columns import NUMBER
+from lpview.report.units import Units, in_units, label_of, units_of
+from lpview.report.worth import step_sentence
+from lpview.screen.columns import NUMBER, named
 from lpview.screen.pane import CURSOR, HEADING, PLAIN, LinesPane, Runs
 from lpview.screen.price_book import PriceBook
 from lpview.screen.spine import Glyphs
@@ -45,7 +47,7 @@ class LedgerPane(LinesPane):
         """Break totals and sentences at the pane's width."""
         sentences = [] if self.entry is None else self._sentences(self.entry)
         cells = max(self.size.width - 4, 20)
-        self._totals = [part for text in sentences for part in wrap(text, cells)]
+        self._totals = [part for text in sentences for part in wrapped(text, cells)]
 
     def on_resize(self) -> None:
         """Sentences break anew."""
@@ -88,7 +90,7 @@ class LedgerPane(LinesPane):
     def heading(self, width_: int) -> list[Runs]:
         """The line as a comparison, and where the cursor is."""
         mark = self.glyphs.cursor if self.has_focus else " "
-        title = "no line" if self.entry is None else heading(self.entry)
+        title = "no line" if self.entry is None else heading(self.entry, self.found.head)
         place = f"{self.cursor + 1} of {self.line_count}" if self.line_count else ""
         text = fitted(f"{mark} LEDGER  {title}", width_ - len(place) - 2, self.glyphs.more)
         return [[(text + "  " + place, HEADING if self.has_focus else PLAIN)]]
@@ -104,9 +106,12 @@ class LedgerPane(LinesPane):
         entry, lp = self.entry, self.found.head.model
         assert entry is not None
         terms = entry.terms
-        names = lp.columns if entry.is_row else lp.rows
+        partner = int(terms.partner[at])
         cells = max(width_ - 3 * (NUMBER + 3) - 4, 8)
-        name = fitted(names[int(terms.partner[at])], cells, self.glyphs.more)
+        name = fitted((lp.columns if entry.is_row else lp.rows)[partner], cells, self.glyphs.more)
+        label = label_of(self.found.head, partner + (lp.m if entry.is_row else 0)).label
+        if label:
+            name = named(name, label, cells, self.glyphs.more)
         both = (terms.coefficient, terms.factor)
         numbers = [fitted_number(float(part[at]), NUMBER) for part in both]
         product = float(terms.product[at])
@@ -118,23 +123,48 @@ class LedgerPane(LinesPane):
     def _sentences(self, entry: Ledger) -> list[str]:
         """What the terms leave, in numbers and in words."""
         missing = self.book.missing(entry.line)
-        sentences = meaning(self.found, entry, self.book.line(entry.line))
+        prices = self.book.line(entry.line)
+        sentences = meaning(self.found, entry, prices)
+        worth = step_sentence(self.found, entry.line, prices) if prices else ""
+        units = units_of(self.found.head, entry.line)
         exactly: tuple[str, ...] = ()
         if self.proof is not None:
             exactly = exact_sentences(self.found.head.model, self.proof, entry.line)
-        return [_numbers(entry), *exactly, *sentences, *([missing] if missing else [])]
+        last = [text for text in (missing, worth) if text]
+        return [_numbers(entry, units), *exactly, *sentences, *last]
 
 
-def _numbers(entry: Ledger) -> str:
+def wrapped(text: str, cells: int) -> list[str]:
+    """A sentence in lines of at most so many cells, broken at blanks where that can be done."""
+    if text.isascii():
+        return wrap(text, cells)
+    lines = [""]
+    for word in text.split(" "):
+        joined = f"{lines[-1]} {word}" if lines[-1] else word
+        if width(joined) <= cells:
+            lines[-1] = joined
+            continue
+        lines += [""] * bool(lines[-1])
+        for character in word:
+            if width(lines[-1] + character) > cells:
+                lines.append("")
+            lines[-1] += character
+    return lines
+
+
+def _numbers(entry: Ledger, units: Units) -> str:
     """What the terms leave, in a line."""
-    number = fitted_number
+
+    def told(value: float, unit: str) -> str:
+        return in_units(fitted_number(value, NUMBER), unit)
+
+    value, price = told(entry.value, units.own), told(entry.price, units.price)
     if entry.is_row:
         return (
-            f"row value {number(entry.value, NUMBER)}, slack {number(entry.slack, NUMBER)}, "
-            f"dual value {number(entry.price, NUMBER)}, "
-            f"product {number(entry.complementarity, NUMBER)}"
+            f"row value {value}, slack {told(entry.slack, units.own)}, dual value {price}, "
+            f"product {told(entry.complementarity, units.objective)}"
         )
     return (
-        f"value {number(entry.value, NUMBER)}, cost {number(entry.cost, NUMBER)} "
-        f"less {number(entry.used, NUMBER)} = reduced cost {number(entry.price, NUMBER)}"
+        f"value {value}, cost {told(entry.cost, '')} less {told(entry.used, '')} = "
+        f"reduced cost {price}"
     )

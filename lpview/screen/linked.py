@@ -19,6 +19,7 @@ from textual.widgets import Input, Static
 from lpview.families import Kind, summarize
 from lpview.marks import Flag
 from lpview.outcomes import Optimal
+from lpview.report.heads import noticed
 from lpview.report.names import safe
 from lpview.screen.columns import constraint_columns, variable_columns
 from lpview.screen.history import History
@@ -90,6 +91,13 @@ class LinkedScreen(Screen[int | None]):
                 table.fold(True)
         self.set_focus(self.leading)
         self.follow_selection(self.leading)
+        self._warn()
+
+    def _warn(self) -> None:
+        """What stands in place of the model, and what reading it did; the check has it all."""
+        head = self.found.head
+        if head.notes.scope or head.notes.remarks:
+            self.say("; ".join([*filter(None, [head.notes.scope]), *noticed(head)]))
 
     # Linking -----------------------------------------------------------------
 

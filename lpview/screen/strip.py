@@ -13,8 +13,10 @@ from textual.widget import Widget
 from lpview.kkt import Condition
 from lpview.marks import Flag
 from lpview.outcomes import Optimal
-from lpview.report.names import fitted, safe, width
+from lpview.report.heads import title
+from lpview.report.names import fitted, width
 from lpview.report.numbers import number
+from lpview.report.units import in_units, objective_unit
 from lpview.screen.pane import FAULT, HEADING, PLAIN, Runs
 from lpview.screen.price_book import PriceBook
 from lpview.screen.spine import Glyphs
@@ -69,14 +71,16 @@ def _first(found: Optimal, cells: int, glyphs: Glyphs, proof: str) -> Runs:
     counts = [f"zero slack {np.count_nonzero(flags[Flag.ZERO_SLACK])}"]
     if Flag.DEGENERATE in flags:
         counts.append(f"degenerate {np.count_nonzero(flags[Flag.DEGENERATE])}")
-    name = safe(PurePath(found.head.request.source).name)
+    head = found.head
+    name = title(head, PurePath(head.request.source).name)
+    unit = objective_unit(head)
     for digits in range(MOST_DIGITS, LEAST_DIGITS - 1, -1):
-        objective = number(found.measurement.primal_objective, digits)
-        sense = found.head.model.sense.value
+        objective = in_units(number(found.measurement.primal_objective, digits), unit)
+        sense = head.model.sense.value
         tail = f"  {sense}  optimal {objective} {word}  {'  '.join(counts)}"
-        if len(tail) + min(width(name), SHORTEST_NAME) <= cells:
+        if width(tail) + min(width(name), SHORTEST_NAME) <= cells:
             break
-    return [(fitted(name, max(cells - len(tail), 1), glyphs.more) + tail, style)]
+    return [(fitted(name, max(cells - width(tail), 1), glyphs.more) + tail, style)]
 
 
 def _gauges(verdicts: list[Verdict], cells: int, glyphs: Glyphs) -> Runs:

@@ -9,12 +9,23 @@ import numpy as np
 from rich.style import Style
 
 from lpview.families import Summary
+from lpview.labels import NO_LABEL
 from lpview.marks import FAULTS
 from lpview.model import Vector
 from lpview.outcomes import Optimal
 from lpview.report.names import fitted, width
 from lpview.report.numbers import fitted_number
-from lpview.screen.columns import GAP, NUMBER, Column, Layout, TableColumns, layout, squeezed
+from lpview.screen.columns import (
+    GAP,
+    NUMBER,
+    UNIT,
+    Column,
+    Layout,
+    TableColumns,
+    layout,
+    named,
+    widths_of,
+)
 from lpview.screen.pane import (
     CURSOR,
     CURSOR_AWAY,
@@ -72,13 +83,14 @@ class MirrorTable(LinesPane):
         super().__init__(**options)
         self.found, self.columns, self.glyphs = found, columns, glyphs
         self.first_line = first_line
-        self.view = TableView(names)
+        labels = {k: known.label for k, known in columns.labels.items() if known.label}
+        self.view = TableView(names, labels)
         self.families = families
         self.folded = False
         self.link = Link()
         self.on_moved: Callable[[LinesPane], None] = lambda _: None
         self._fit: tuple[int, Layout] | None = None
-        self.longest = max((width(name) for name in names), default=1)
+        self.widths = widths_of(names, columns.labels)
 
     # What there is -----------------------------------------------------------
 
@@ -175,7 +187,7 @@ class MirrorTable(LinesPane):
         position = view.position + 1
         parts = [f"{mark} {self.columns.kind}  {position} of {view.order.size}"]
         limits = [view.flag_word, view.family_word and f"family {view.family_word}"]
-        limits += [view.search and f"name has {view.search}"]
+        limits += [view.search and f"{view.searched} has {view.search}"]
         if view.linked_to:
             limits = [f"linked to {view.linked_to}"]
         parts.append(", ".join(limit for limit in limits if limit) or "all")
@@ -187,12 +199,12 @@ class MirrorTable(LinesPane):
     def shared_layout(self, width_: int) -> Layout:
         """The layout that both tables use, so that the spine runs straight down."""
         if self._fit is None or self._fit[0] != width_:
-            self._fit = width_, layout(width_, CURSOR_CELLS, WIDTH, self.longest)
+            self._fit = width_, layout(width_, CURSOR_CELLS, WIDTH, self.widths)
         return self._fit[1]
 
     def share_layout_with(self, other: MirrorTable) -> None:
-        """Give both tables room for the longest name of either."""
-        self.longest = max(self.longest, other.longest)
+        """Give both tables room for the longest name, label and unit of either."""
+        self.widths = self.widths.joined(other.widths)
         self._fit = None
 
     def _heads(self, width_: int) -> Runs:
@@ -202,6 +214,7 @@ class MirrorTable(LinesPane):
             texts = ("lines", "zero slack", "degenerate", self._largest, self._worth)
             return [(self._family_line("family", texts, width_, " "), QUIET)]
         left = [_right(c.title, c.cells) for c in reversed(self.columns.primal[: fit.primal])]
+        left[-1] += self._beside(UNIT, fit)
         link = fitted(self.link.title, NUMBER, self.glyphs.more)
         right = self._right_side(fit, lambda column: column.title, lambda _: "", link)
         cells = ["  " + _left("name", fit.name), *left, " " * WIDTH, right]
@@ -241,12 +254,19 @@ class MirrorTable(LinesPane):
     def _line(self, line: int, width_: int, mark: str) -> str:
         fit = self.shared_layout(width_)
         left = [_right(c.text(line), c.cells) for c in reversed(self.columns.primal[: fit.primal])]
+        known = self.columns.labels.get(line, NO_LABEL)
+        left[-1] += self._beside(known.unit, fit)
         shared = self.link.coefficient(line)
         link = "" if shared is None else fitted_number(shared, NUMBER)
         right = self._right_side(fit, lambda c: c.text(line), lambda c: c.mark(line), link)
         marks = spine(self.found.marks, self.first_line + line, self.glyphs)
-        name = _left(squeezed(self.view.names[line], fit.name, self.glyphs.more), fit.name)
+        name = named(self.view.names[line], known.label, fit.name, self.glyphs.more)
+        name = _left(name, fit.name)
         return (" " * GAP).join([mark + " " + name, *left, marks, right])
+
+    def _beside(self, unit: str, fit: Layout) -> str:
+        """A unit behind a number, where units are shown."""
+        return " " + _left(fitted(unit, fit.unit, self.glyphs.more), fit.unit) if fit.unit else ""
 
     def shows(self, lines: Iterable[int]) -> bool:
         """Whether any of these lines, numbered as in `lpview.kkt`, is in sight."""

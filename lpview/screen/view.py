@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Mapping
 from dataclasses import dataclass, field
 from typing import Any
 
@@ -18,8 +19,10 @@ class TableView:
 
     names: tuple[str, ...]
     """Names of all lines, in file order."""
+    labels: Mapping[int, str] = field(default_factory=dict)
+    """Labels of the lines that have one, searched together with their names."""
     search: str = ""
-    """Words that a shown line's name must contain, any case; empty for none."""
+    """Words that a shown line's name or label must contain, any case; empty for none."""
     flag_word: str = ""
     """The flag that shown lines carry; empty for any."""
     linked_to: str = ""
@@ -55,6 +58,11 @@ class TableView:
         return int(hits[0]) if hits.size else -1
 
     @property
+    def searched(self) -> str:
+        """What a search looks at."""
+        return "name or label" if self.labels else "name"
+
+    @property
     def is_limited(self) -> bool:
         """Whether any filter of the person's own is on."""
         return bool(self.search or self.flag_word or self.family_word)
@@ -65,7 +73,7 @@ class TableView:
             self.line = int(self.order[min(max(position, 0), self.order.size - 1)])
 
     def limit_to_words(self, text: str) -> None:
-        """Show names that contain every word of ``text``."""
+        """Show lines whose name and label contain every word of ``text``."""
         self.search = " ".join(text.split())
         self._found = self._matching(self.search) if self.search else None
         self._arrange()
@@ -105,6 +113,8 @@ class TableView:
     def _matching(self, words: str) -> Mask:
         if self._folded_names is None:
             self._folded_names = [name.casefold() for name in self.names]
+            for line, label in self.labels.items():
+                self._folded_names[line] += f" {label.casefold()}"
         found = np.ones(len(self.names), dtype=bool)
         for word in words.casefold().split():
             found &= np.fromiter((word in name for name in self._folded_names), bool, found.size)

@@ -1,0 +1,40 @@
+"""What stands on every report whatever it is about: the model it is of, and warnings."""
+
+from __future__ import annotations
+
+from lpview.outcomes import Head
+from lpview.report.document import Sentence
+from lpview.report.names import safe
+from lpview.report.numbers import count
+
+
+def title(head: Head, source: str = "") -> str:
+    """The model as the person named it, and what stands in place of it, if anything does.
+
+    ``source``, if any, stands in place of its name.
+    """
+    scope = head.notes.scope
+    return safe(source or head.request.source) + (f" ({safe(scope)})" if scope else "")
+
+
+def noticed(head: Head) -> list[str]:
+    """One text on what reading noticed, where it noticed anything."""
+    notes, parts = head.notes, []
+    if notes.empty_coefficients:
+        parts.append(f"{count(notes.empty_coefficients, 'empty coefficient')} read as 0")
+    if notes.empty_costs:
+        parts.append(f"{count(notes.empty_costs, 'empty cost')} read as 0")
+    if notes.rows_without_coefficients:
+        parts.append(f"{count(len(notes.rows_without_coefficients), 'row')} without coefficients")
+    if notes.names_alike:
+        one, other = notes.names_alike[0]
+        pairs = count(len(notes.names_alike), "pair")
+        parts.append(f"{pairs} of names alike, such as {safe(one)} and {safe(other)}")
+    # A remark may have commas of its own.
+    told = [", ".join(parts)] * bool(parts) + [safe(remark) for remark in notes.remarks]
+    return ["noticed while reading: " + "; ".join(told)] if told else []
+
+
+def noticed_sentences(head: Head) -> tuple[Sentence, ...]:
+    """The same as a sentence of its own."""
+    return tuple(map(Sentence, noticed(head)))
