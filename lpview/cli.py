@@ -10,9 +10,10 @@ from difflib import get_close_matches
 from importlib import import_module
 
 from lpview import __version__
+from lpview.check_options import add_report_options, add_route_options, wrong_check_use
 from lpview.curve_options import add_curve_options
+from lpview.input_options import add_input_options, add_plan_options
 from lpview.price_options import (
-    add_line_options,
     add_plans_options,
     add_prices_options,
     wrong_use,
@@ -136,17 +137,17 @@ def _parser() -> argparse.ArgumentParser:
             "models" if several else "model",
             nargs="+" if several else None,
             metavar="MODEL",
-            help="a .csv file or a folder of CSV blocks, or - for standard input",
+            help="a .csv file or a folder of CSV blocks, an .mps file, or - for standard input",
         )
+        add_input_options(command)
         if name != "open":
             command.add_argument("--output", metavar="FILE", help="write here, not to the screen")
     for name in ("check", "open", "prove", "prices", "plans", "curve"):
         _add_solve_options(made[name])
+    add_plan_options(made["check"])
+    made["prove"].set_defaults(plan=None)
     for name in ("check", "prove"):
-        _add_report_options(made[name])
-        made[name].add_argument(
-            "--certificate", metavar="FILE", help="write what was proved, for lpview verify"
-        )
+        add_report_options(made[name])
     made["check"].add_argument(
         "--prove", action="store_true", help="prove the optimum in exact rational arithmetic"
     )
@@ -156,11 +157,13 @@ def _parser() -> argparse.ArgumentParser:
     add_plans_options(made["plans"])
     add_curve_options(made["curve"])
     for name in ("check", "prove", "open"):
-        _add_route_options(made[name])
+        add_route_options(made[name])
     made["open"].add_argument(
         "--ascii", action="store_true", help="draw all marks with plain characters"
     )
-    made["open"].set_defaults(format="text", full=False, prices=False, prove=False)
+    made["open"].set_defaults(
+        format="text", full=False, prices=False, prove=False, plan=None, summary=False
+    )
     return parser
 
 
@@ -182,59 +185,11 @@ def _add_solve_options(command: argparse.ArgumentParser) -> None:
     command.set_defaults(no_crossover=False, second_route="never")
 
 
-def _add_route_options(check: argparse.ArgumentParser) -> None:
-    """What else the check can be told of how to solve."""
-    check.add_argument(
-        "--no-crossover", action="store_true", help="end an interior-point run without a basis"
-    )
-    route = check.add_mutually_exclusive_group()
-    route.add_argument(
-        "--second-route", dest="second_route", action="store_const", const="always",
-        help="solve the rebuilt dual too, however long it takes",
-    )  # fmt: skip
-    route.add_argument(
-        "--no-second-route", dest="second_route", action="store_const", const="never",
-        help="do not solve the rebuilt dual (default: where it is about as quick)",
-    )  # fmt: skip
-    check.set_defaults(second_route="if quick")
-
-
-def _add_report_options(check: argparse.ArgumentParser) -> None:
-    """What the check can be told of its report."""
-    check.add_argument("--format", choices=("text", "markdown", "json"), default="text")
-    check.add_argument("--full", action="store_true", help="list every line, however many")
-    add_line_options(check, "print the ledger of this {} instead of the report; may be repeated")
-    check.add_argument(
-        "--families", action="store_true",
-        help="print families of lines, grouped by what their names begin with",
-    )  # fmt: skip
-    check.add_argument(
-        "--prices", action="store_true",
-        help="find out which prices are not unique, and how far their rates hold",
-    )  # fmt: skip
-
-
 def _wrong_use(options: argparse.Namespace) -> str:
     """What is wrong with options that are right one by one, or an empty string."""
     if options.command in ("prices", "plans", "curve"):
         return wrong_use(options)
-    if options.command not in ("check", "prove"):
-        return ""
-    if options.certificate and (not options.prove or len(options.models) > 1):
-        return "expected --certificate together with --prove and one MODEL"
-    # Ledgers, families and JSON are three different things to print.
-    if options.format == "json" and (options.lines or options.families):
-        return (
-            "--row, --column and --families are printed as text or markdown; "
-            "json has every line anyway"
-        )
-    if options.lines and options.families:
-        return "expected --row and --column, or --families, got both"
-    if options.prices and options.families:
-        return "expected --prices or --families, got both"
-    if options.prove and options.families:
-        return "expected --prove or --families, got both"
-    return ""
+    return wrong_check_use(options) if options.command in ("check", "prove") else ""
 
 
 def _positive(text: str) -> float:

@@ -16,10 +16,12 @@ from pathlib import Path
 from typing import TYPE_CHECKING
 
 from lpview import cli
-from lpview.blocks import InputError, read_model, read_model_bytes, write_blocks
+from lpview.blocks import InputError, write_blocks, write_labels
 from lpview.blocks.mistakes import Mistake, quoted
 from lpview.decimals import number_text
 from lpview.examination import examine
+from lpview.input_options import input_words, plan_words
+from lpview.inputs import ReadAs, ending, read_input, read_input_bytes
 from lpview.model import LinearProgram
 from lpview.outcomes import Examination, NoOptimum, Optimal, Request, SecondRoute
 from lpview.reading import Reading
@@ -39,12 +41,16 @@ Line = tuple[str, str]
 
 def check(options: argparse.Namespace) -> list[int]:
     """``lpview check``: solve and check each model, write one report for all."""
+    if options.plan is not None:
+        from lpview.planned_command import check_plan
+
+        return check_plan(options)
     found: list[Checked] = []
     statuses: list[int] = []
     for source in options.models:
         try:
             found.append(_checked(source, options))
-            statuses.append(_status(found[-1]))
+            statuses.append(_status(found[-1], options))
         except (InputError, NotRepresentableError) as error:
             sys.stderr.write(f"{error}\n")
             statuses.append(cli.USAGE)
@@ -57,14 +63,17 @@ def dual(options: argparse.Namespace) -> list[int]:
     """``lpview dual``: the dual linear program, as blocks that lpview reads."""
     from lpview.dual import build_dual
 
-    program = build_dual(read(options.model)[0].model).program
+    program = build_dual(read(options.model, options)[0].model).program
     write(write_blocks(program), options.output)
     return [cli.DONE]
 
 
 def convert(options: argparse.Namespace) -> list[int]:
     """``lpview convert``: the same model as canonical blocks."""
-    write(write_blocks(read(options.model)[0].model), options.output)
+    reading, _ = read(options.model, options)
+    labels = write_labels(reading.model, reading.labels)
+    blocks = write_blocks(reading.model)
+    write(blocks + "\n" * bool(labels) + labels, options.output)
     return [cli.DONE]
 
 
@@ -84,7 +93,7 @@ def _checked(source: str, options: argparse.Namespace) -> Checked:
     watch, started = Watch(), time.monotonic()
     found = examined(source, options, watch, options.lines)
     priced = proof = None
-    if options.prices and isinstance(found, Optimal):
+    if (options.prices or options.summary) and isinstance(found, Optimal):
         from lpview.price_commands import worked_out
 
         found, priced = worked_out(found, options, watch, started)
@@ -95,13 +104,14 @@ def _checked(source: str, options: argparse.Namespace) -> Checked:
     return Checked(found, priced, proof)
 
 
-def _status(checked: Checked) -> int:
+def _status(checked: Checked, options: argparse.Namespace) -> int:
     statuses = [status(checked.found)]
     if checked.proof is not None:
         from lpview.proof_commands import proof_status
 
         statuses = [proof_status(checked.found, checked.proof)]
-    if checked.priced is not None:
+    # A page tells what it lacks; only who asks for prices is owed them.
+    if checked.priced is not None and options.prices:
         from lpview.price_commands import price_status
 
         statuses.append(price_status(checked.priced))
@@ -113,12 +123,15 @@ def prove(options: argparse.Namespace) -> list[int]:
     return check(options)
 
 
-def read(source: str) -> tuple[Reading, bytes | None]:
+def read(source: str, options: argparse.Namespace) -> tuple[Reading, bytes | None]:
     """A model, and the bytes it came in where that was standard input."""
+    how = ReadAs(
+        options.decimal, options.negated, options.labels, options.relax, options.fix_integers
+    )
     if source == "-":
         data = sys.stdin.buffer.read()
-        return read_model_bytes(data, "-"), data
-    return read_model(source), None
+        return read_input_bytes(data, "-", how), data
+    return read_input(source, how), None
 
 
 def examined(
@@ -131,13 +144,13 @@ def examined(
     from lpview.progress import watched
     from lpview.solver import solve
 
-    reading, data = read(source)
+    reading, data = read(source, options)
     lines_asked(reading.model, source, lines)
     if data is not None:
-        source = _saved(data, options.output)
-    request = _request(source, options)
+        source = saved(data, options.output)
+    asked = request(source, options)
     label = reading.model.name
-    return watched(lambda: examine(reading, request, solve, watch), watch, label)
+    return watched(lambda: examine(reading, asked, solve, watch), watch, label)
 
 
 def examined_quietly(
@@ -147,23 +160,24 @@ def examined_quietly(
     from lpview.solver import solve
 
     say("reading")
-    reading = read_model(source)
+    reading, _ = read(source, options)
     say("solving")
-    return examine(reading, _request(source, options), solve, watch)
+    return examine(reading, request(source, options), solve, watch)
 
 
-def _saved(data: bytes, output: str | None) -> str:
+def saved(data: bytes, output: str | None) -> str:
     """Keep what came from standard input beside the report, under a name of its own."""
     import hashlib
 
     folder = Path(output).parent if output else Path()
-    path = folder / f"model-{hashlib.sha256(data).hexdigest()[:12]}.csv"
+    path = folder / f"model-{hashlib.sha256(data).hexdigest()[:12]}{ending(data)}"
     replace_file(path, data)
     sys.stderr.write(f"saved standard input: {path}\n")
     return str(path)
 
 
-def _request(source: str, options: argparse.Namespace) -> Request:
+def request(source: str, options: argparse.Namespace) -> Request:
+    """What the options ask for about one model."""
     return Request(
         source=source,
         command=_command(source, options),
@@ -181,7 +195,7 @@ def _request(source: str, options: argparse.Namespace) -> Request:
 def _command(source: str, options: argparse.Namespace) -> str:
     """The command that reproduces the report: every option that is not a default."""
     command = {"open": "check", "prove": "check"}.get(options.command, options.command)
-    words = ["lpview", command, source]
+    words = ["lpview", command, source, *input_words(options)]
     for name, default in (("tolerance", 1e-9), ("zero", 1e-9), ("time_limit", None)):
         if getattr(options, name) != default:
             words += [f"--{name.replace('_', '-')}", number_text(getattr(options, name))]
@@ -191,7 +205,8 @@ def _command(source: str, options: argparse.Namespace) -> str:
     route = {"always": ["--second-route"], "never": ["--no-second-route"]}
     words += route.get(options.second_route, []) if command == "check" else []
     if command == "check":
-        words += ["--prices"] * options.prices + ["--prove"] * options.prove
+        words += plan_words(options) + ["--prices"] * options.prices
+        words += ["--prove"] * options.prove
     if options.format != "text":
         words += ["--format", options.format]
     return shlex.join(words)
@@ -251,6 +266,10 @@ def rendered(document: Document, form: str) -> str:
 def _document(checked: Checked, options: argparse.Namespace) -> Document:
     """What was asked for: the report, its families, or the ledgers of some lines."""
     found, priced, proof = checked.found, checked.priced, checked.proof
+    if options.summary:
+        from lpview.report.summary import summary_report
+
+        return summary_report(found, priced, proof)
     if options.families:
         from lpview.report.families import families_report
 

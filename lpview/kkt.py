@@ -18,6 +18,7 @@ from dataclasses import dataclass
 
 import numpy as np
 from numpy.typing import NDArray
+from scipy.sparse import csc_array, csr_array
 
 from lpview import accurate
 from lpview.accurate import Pair
@@ -133,33 +134,57 @@ class FileNumbers:
             (getattr(self.lp, high), low_parts(self.lp, high)),
         )
 
-    def row_values(self, x: Vector) -> tuple[Pair, Vector]:
-        """``A x`` as a pair, and the largest ``|a_ij x_j|`` of each row."""
-        A = self.lp.A
-        return _products(self.by_row, x[A.indices], A.indptr)
+    def row_values(self, x: Vector, low: Vector | None = None) -> tuple[Pair, Vector]:
+        """``A x`` as a pair, and the largest ``|a_ij x_j|`` of each row.
 
-    def reduced_costs(self, y: Vector) -> tuple[Pair, Vector]:
+        ``low``, here and below, is what is to be added to the doubles given.
+        """
+        return _products(self.by_row, x, low, self.lp.A)
+
+    def reduced_costs(self, y: Vector, low: Vector | None = None) -> tuple[Pair, Vector]:
         """``c - A'y`` as a pair, and the largest of ``|c_j|`` and ``|a_ij y_i|``."""
-        A = self.lp.A_by_column
-        sums, term = _products(self.by_column, y[A.indices], A.indptr)
+        sums, term = _products(self.by_column, y, low, self.lp.A_by_column)
         term = np.maximum(term, np.abs(self.lp.c))
         price = accurate.minus(self.c, sums)
         rounding = np.abs(price[0]) <= term * 2.0**-95
         return (np.where(rounding, 0.0, price[0]), np.where(rounding, 0.0, price[1])), term
 
-    def objective(self, x: Vector) -> tuple[float, float]:
+    def objective(self, x: Vector, low: Vector | None = None) -> tuple[float, float]:
         """``c'x + offset`` as a pair."""
         p, e = accurate.two_product(self.c[0], x)
-        return accurate.total([p, e, self.c[1] * x, self.offset])
+        more = [] if low is None else [self.c[0] * low]
+        return accurate.total([p, e, self.c[1] * x, *more, self.offset])
 
 
-def _products(a: Pair, v: Vector, starts: NDArray[np.integer]) -> tuple[Pair, Vector]:
+def _products(
+    a: Pair, v: Vector, low: Vector | None, places: csr_array | csc_array
+) -> tuple[Pair, Vector]:
+    """Sums of ``a`` times the entries of ``v`` over the segments of a sparse matrix."""
+    starts = places.indptr
+    more = [] if low is None else [a[0] * low[places.indices]]
+    v = v[places.indices]
     p, e = accurate.two_product(a[0], v)
     term = np.zeros(len(starts) - 1)
     filled = np.flatnonzero(np.diff(starts))
     if filled.size:
         term[filled] = np.maximum.reduceat(np.abs(p), starts[:-1][filled])
-    return accurate.segment_sums([p, e, a[1] * v], starts), term
+    return accurate.segment_sums([p, e, a[1] * v, *more], starts), term
+
+
+@dataclass(frozen=True)
+class Low:
+    """What a file's numbers have beyond their nearest doubles; None where they are doubles."""
+
+    x: Vector | None = None
+    """Of the plan, shape ``(n,)``."""
+    y: Vector | None = None
+    """Of the dual values, shape ``(m,)``."""
+    z: Vector | None = None
+    """Of the reduced costs, shape ``(n,)``."""
+
+
+NO_LOW = Low()
+"""For an answer of doubles."""
 
 
 def measure(
@@ -168,6 +193,7 @@ def measure(
     y: Vector,
     z: Vector | None = None,
     numbers: FileNumbers | None = None,
+    low: Low = NO_LOW,
 ) -> Measurement:
     """Measure every KKT residual of an answer.
 
@@ -181,27 +207,34 @@ def measure(
         stationarity looks at them; everything else uses ``c - A'y``.
     numbers
         ``FileNumbers(lp)``, where the caller has it already.
+    low
+        What is to be added to ``x``, ``y`` and ``z``, where these are the doubles
+        nearest to numbers of a file.
     """
     numbers = numbers or FileNumbers(lp)
     with np.errstate(over="ignore", invalid="ignore"):
-        row_value, row_term = numbers.row_values(x)
-        price, price_term = numbers.reduced_costs(y)
-        zero = np.zeros_like
+        row_value, row_term = numbers.row_values(x, low.x)
+        price, price_term = numbers.reduced_costs(y, low.y)
         sign = lp.sense.sign
-        rows = _side(sign, row_value, row_term, (y, zero(y)), np.abs(y), numbers.row_ends)
-        columns = _side(sign, (x, zero(x)), np.abs(x), price, price_term, numbers.column_ends)
-        primal = numbers.objective(x)
+        plan, duals = _pair(x, low.x), _pair(y, low.y)
+        rows = _side(sign, row_value, row_term, duals, np.abs(y), numbers.row_ends)
+        columns = _side(sign, plan, np.abs(x), price, price_term, numbers.column_ends)
+        primal = numbers.objective(x, low.x)
         products = (*rows.dual_objective, *columns.dual_objective, numbers.offset)
         dual = accurate.total(products)
         gap = sign * accurate.total([np.array([*primal, -dual[0], -dual[1]])])[0]
         residuals = _residuals(rows, columns, (primal[0], dual[0], gap))
         if z is not None:
-            off = np.abs(accurate.minus(price, (z, zero(z)))[0])
+            off = np.abs(accurate.minus(price, _pair(z, low.z))[0])
             # Rows have no such condition, but are counted like all lines.
             rows_too = (np.zeros(lp.m), off), (np.zeros(lp.m), price_term)
             residuals[Condition.STATIONARITY] = Residuals(*map(np.concatenate, rows_too))
         stake = _at_stake(rows, columns)
     return Measurement(rows, columns, primal[0], dual[0], gap, stake, residuals)
+
+
+def _pair(values: Vector, low: Vector | None) -> Pair:
+    return values, np.zeros_like(values) if low is None else low
 
 
 def _side(

@@ -28,6 +28,7 @@ from lpview.report import json, price_json
 from lpview.report import prices as reports
 from lpview.report.check import report, verdict
 from lpview.report.document import Document
+from lpview.report.summary import summary_lines
 from lpview.report.together import asking_moves, together_report
 from lpview.run import Ask, Watch
 from lpview.solver import warm_model
@@ -106,6 +107,8 @@ def _asked(
     if options.lines:
         lines = commands.lines_asked(found.head.model, "", options.lines)
         return price_lines(found, ready, lines, step)
+    if options.command == "check" and options.summary:
+        return price_lines(found, ready, summary_lines(found), step)
     if options.format in ("json", "csv"):
         return price_everything(found, ready, step)
     priced = price_report(found, ready, None if options.full else reports.MOST_ROWS, step)

@@ -77,7 +77,7 @@ def proof_status(found: Examination, proof: Proof) -> int:
 
 def verify(options: argparse.Namespace) -> list[int]:
     """``lpview verify``: check a certificate with the kernel, which shares nothing with us."""
-    canonical = write_blocks(commands.read(options.model)[0].model)
+    canonical = write_blocks(commands.read(options.model, options)[0].model)
     try:
         certificate = Path(options.certificate).read_bytes()
     except OSError as error:

@@ -14,6 +14,7 @@ import pytest
 from lpview import cli, curve_command
 from lpview.blocks import InputError, read_model
 from lpview.curve_options import add_curve_options
+from lpview.input_options import add_input_options
 from tests.curve.helpers import DATA
 
 GLASS = str(DATA / "textbook/a1.csv")
@@ -44,6 +45,7 @@ def parser():
     made = argparse.ArgumentParser()
     made.add_argument("model")
     made.add_argument("--output")
+    add_input_options(made)
     cli._add_solve_options(made)
     add_curve_options(made)
     made.set_defaults(command="curve")

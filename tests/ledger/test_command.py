@@ -93,12 +93,12 @@ def test_of_several_models_only_the_one_without_the_row_is_refused(bed, capfd):
     [
         (
             ("--row", "room", "--format", "json"),
-            "--row, --column and --families are printed as text or markdown; "
+            "--row, --column, --families and --summary are printed as text or markdown; "
             "json has every line anyway",
         ),
         (
             ("--families", "--format", "json"),
-            "--row, --column and --families are printed as text or markdown; "
+            "--row, --column, --families and --summary are printed as text or markdown; "
             "json has every line anyway",
         ),
         (

@@ -1,0 +1,49 @@
+"""Everything known about a plan, for reports and the exit status."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+from lpview.kkt import FileNumbers
+from lpview.outcomes import Examination, Optimal
+from lpview.planned.judging import Judged, judged
+from lpview.planned.limits import Limits
+from lpview.planned.measuring import Measured
+from lpview.planned.optimum import Against, against_optimum
+
+
+@dataclass(frozen=True, eq=False)
+class CheckedPlan:
+    """A plan, measured and judged, beside what a solver has to say about the model."""
+
+    found: Measured
+    """What was measured."""
+    judgement: Judged
+    """What it comes to."""
+    outcome: Examination
+    """The model solved and checked, whatever came of it."""
+    against: Against | None
+    """The plan beside the optimum; None where no checked optimum is known."""
+    rounded: bool
+    """Whether it is enough that conditions hold within the rounding."""
+
+    @property
+    def passed(self) -> bool:
+        """Whether every condition that can be judged passed, as asked for; whatever the
+        solver says."""
+        return not self.judgement.failing(self.rounded)
+
+
+def checked_plan(
+    found: Measured,
+    outcome: Examination,
+    limits: Limits,
+    rounded: bool,
+    numbers: FileNumbers | None = None,
+) -> CheckedPlan:
+    """Judge a plan that was measured, beside the examination of its model."""
+    judgement = judged(found, outcome.head.request.tolerance, limits)
+    against = None
+    if isinstance(outcome, Optimal) and outcome.passed:
+        against = against_optimum(found, judgement, outcome, numbers)
+    return CheckedPlan(found, judgement, outcome, against, rounded)
