@@ -10,10 +10,10 @@ from difflib import get_close_matches
 from importlib import import_module
 
 from lpview import __version__
-from lpview.check_options import add_report_options, add_route_options, wrong_check_use
-from lpview.curve_options import add_curve_options
-from lpview.input_options import add_input_options, add_plan_options
-from lpview.price_options import (
+from lpview.options.check import add_report_options, add_route_options, wrong_check_use
+from lpview.options.curve import add_curve_options
+from lpview.options.inputs import add_input_options, add_plan_options
+from lpview.options.prices import (
     add_plans_options,
     add_prices_options,
     wrong_use,
@@ -81,7 +81,7 @@ def _run(options: argparse.Namespace) -> int:
         from lpview.screen.launch import launch
 
         return launch(options)
-    module = import_module(_WHERE.get(options.command, "lpview.commands"))
+    module = import_module(f"lpview.commands.{_WHERE[options.command]}")
     statuses: list[int] = getattr(module, options.command)(options)
     return worst(statuses)
 
@@ -109,12 +109,16 @@ _COMMANDS = {
 }
 
 _WHERE = {
-    "verify": "lpview.proof_commands",
-    "prices": "lpview.price_commands",
-    "plans": "lpview.plan_commands",
-    "curve": "lpview.curve_command",
+    "check": "check",
+    "prove": "check",
+    "verify": "proof",
+    "prices": "prices",
+    "plans": "plans",
+    "curve": "curve",
+    "dual": "models",
+    "convert": "models",
 }
-"""Modules of the commands that have one of their own."""
+"""The module of `lpview.commands` that holds each command."""
 
 
 def _parser() -> argparse.ArgumentParser:

@@ -200,7 +200,7 @@ class LpviewApp(App[int]):
 
     def on_finished(self, message: Finished) -> None:
         """Show the mirror, or the report of any other outcome."""
-        from lpview.commands import status
+        from lpview.commands.leaving import status
         from lpview.screen.outcome import screen_for
 
         self.return_status = status(message.found)

@@ -17,7 +17,7 @@ def launch(options: argparse.Namespace) -> int:
     """Open the mirror on one model; returns the exit status."""
 
     def examine(watch: Watch, say: Callable[[str], None]) -> Examination:
-        from lpview.commands import examined_quietly
+        from lpview.commands.arriving import examined_quietly
 
         return examined_quietly(options.model, options, watch, say)
 

@@ -203,7 +203,7 @@ def test_a_defect_of_ours_is_one_line_and_no_traceback(bed, capfd, monkeypatch):
     def broken(*_: object) -> None:
         raise ZeroDivisionError("by zero")
 
-    monkeypatch.setattr("lpview.commands.examine", broken)
+    monkeypatch.setattr("lpview.commands.arriving.examine", broken)
     monkeypatch.delenv("LPVIEW_TRACEBACK", raising=False)
     status, out, err = run("check", "bed.csv", capfd=capfd)
     assert (status, out) == (4, "")

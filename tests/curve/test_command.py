@@ -11,10 +11,11 @@ from pathlib import Path
 
 import pytest
 
-from lpview import cli, curve_command
+from lpview import cli
 from lpview.blocks import InputError, read_model
-from lpview.curve_options import add_curve_options
-from lpview.input_options import add_input_options
+from lpview.commands import curve as curve_command
+from lpview.options.curve import add_curve_options
+from lpview.options.inputs import add_input_options
 from tests.curve.helpers import DATA
 
 GLASS = str(DATA / "textbook/a1.csv")

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import pytest
 
-from lpview.price_options import _move
+from lpview.options.prices import _move
 from tests.price_report.models import GLASSHOUSE, LOOSE, run, written
 
 

@@ -321,7 +321,7 @@ def test_a_time_limit_ends_the_work_with_four(tmp_path, monkeypatch, capfd):
     monkeypatch.chdir(tmp_path)
     written(tmp_path, "glass.csv", GLASSHOUSE)
     later = iter(np.arange(0.0, 1e6, 100.0))
-    monkeypatch.setattr("lpview.price_commands.time.monotonic", lambda: float(next(later)))
+    monkeypatch.setattr("lpview.commands.prices.time.monotonic", lambda: float(next(later)))
     status, out, _ = run("check", "glass.csv", "--prices", "--time-limit", "50", capfd=capfd)
     assert status == 4
     assert "stopped: price intervals were not finished (time limit reached); dual values" in out
@@ -329,8 +329,9 @@ def test_a_time_limit_ends_the_work_with_four(tmp_path, monkeypatch, capfd):
 
 SLOW = """
 import signal, sys, threading, time
-from lpview import cli, price_about
-inner = price_about.steps
+from lpview import cli
+from lpview.commands import about
+inner = about.steps
 def slow(watch, limit, started):
     step = inner(watch, limit, started)
     def waiting():
@@ -341,7 +342,7 @@ def slow(watch, limit, started):
             time.sleep(0.1)
         step()
     return waiting
-price_about.steps = slow
+about.steps = slow
 sys.exit(cli.main(["prices", "glass.csv"]))
 """
 

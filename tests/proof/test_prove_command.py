@@ -180,7 +180,7 @@ def test_stopped_by_the_time_limit(
     tmp_path: Path, monkeypatch: pytest.MonkeyPatch, capsys: pytest.CaptureFixture[str]
 ) -> None:
     readings = iter(range(0, 10**9, 100))
-    monkeypatch.setattr("lpview.proof_commands.time.monotonic", lambda: float(next(readings)))
+    monkeypatch.setattr("lpview.commands.proof.time.monotonic", lambda: float(next(readings)))
     status, out, _ = run(capsys, "prove", str(MODELS / "winter.csv"), "--time-limit", "50")
     assert status == 4
     assert "verified: every condition passed at 1e-9 scaled; not proved" in out
@@ -192,7 +192,7 @@ def test_no_certificate_of_nothing(
     tmp_path: Path, monkeypatch: pytest.MonkeyPatch, capsys: pytest.CaptureFixture[str]
 ) -> None:
     readings = iter(range(0, 10**9, 100))
-    monkeypatch.setattr("lpview.proof_commands.time.monotonic", lambda: float(next(readings)))
+    monkeypatch.setattr("lpview.commands.proof.time.monotonic", lambda: float(next(readings)))
     target = tmp_path / "proof.txt"
     words = ("prove", str(MODELS / "winter.csv"), "--time-limit", "50")
     status, _, err = run(capsys, *words, "--certificate", str(target))

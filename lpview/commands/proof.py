@@ -8,8 +8,9 @@ import time
 from fractions import Fraction
 from pathlib import Path
 
-from lpview import cli, commands
+from lpview import cli
 from lpview.blocks import write_blocks
+from lpview.commands import arriving, leaving
 from lpview.outcomes import Examination, Head, Optimal, Stopped
 from lpview.progress import watched
 from lpview.proof import kernel
@@ -63,7 +64,7 @@ def _write_certificate(head: Head, proof: Proof, target: str) -> None:
         sys.stderr.write(f"{target}: not written, for nothing was proved: {proof.reason}\n")
         return
     text = write_certificate(head.model, head.sha256, proof)
-    commands.replace_file(Path(target), text.encode())
+    leaving.replace_file(Path(target), text.encode())
 
 
 def proof_status(found: Examination, proof: Proof) -> int:
@@ -71,13 +72,13 @@ def proof_status(found: Examination, proof: Proof) -> int:
     if isinstance(proof, ProvedOptimal):
         return cli.DONE
     if isinstance(proof, NotProved):
-        return cli.worst([commands.status(found), cli.NOT_ESTABLISHED])
+        return cli.worst([leaving.status(found), cli.NOT_ESTABLISHED])
     return cli.NO_OPTIMUM
 
 
 def verify(options: argparse.Namespace) -> list[int]:
     """``lpview verify``: check a certificate with the kernel, which shares nothing with us."""
-    canonical = write_blocks(commands.read(options.model, options)[0].model)
+    canonical = write_blocks(arriving.read(options.model, options)[0].model)
     try:
         certificate = Path(options.certificate).read_bytes()
     except OSError as error:
@@ -89,9 +90,9 @@ def verify(options: argparse.Namespace) -> list[int]:
         verdict = kernel.verify(canonical.encode(), certificate)
     except ValueError as refusal:
         words = f"REFUSED as a proof of this model: {refusal}"
-        commands.write(f"{options.certificate}: {words}\n", options.output)
+        leaving.write(f"{options.certificate}: {words}\n", options.output)
         return [cli.FAILED]
     claim, _, value = verdict.rpartition(" ")
     words = f"{claim} {exact_text(Fraction(value))}"
-    commands.write(f"{options.certificate}: accepted as a proof: {words}\n", options.output)
+    leaving.write(f"{options.certificate}: accepted as a proof: {words}\n", options.output)
     return [cli.DONE]

@@ -8,14 +8,15 @@ import time
 
 import numpy as np
 
-from lpview import cli, commands
+from lpview import cli
 from lpview.answer import Answer
 from lpview.blocks import write_values
+from lpview.commands import arriving, leaving
+from lpview.commands.about import WORKING, steps
+from lpview.commands.prices import without_prices
 from lpview.examination import check_answer
 from lpview.model import Vector
 from lpview.outcomes import Optimal
-from lpview.price_about import WORKING, steps
-from lpview.price_commands import without_prices
 from lpview.priced import Interval, StoppedEarlyError
 from lpview.prices import NoPrices, Prices, work_out
 from lpview.progress import watched
@@ -30,16 +31,16 @@ def plans(options: argparse.Namespace) -> list[int]:
     """``lpview plans``: which variables may differ, or one of the other plans."""
     watch, started = Watch(), time.monotonic()
     lines = [] if options.column is None else [("column", options.column)]
-    found = commands.examined(options.model, options, watch, lines)
+    found = arriving.examined(options.model, options, watch, lines)
     if not isinstance(found, Optimal) or not found.passed:
         return [without_prices(found, options)]
     ready = watched(lambda: work_out(found, warm_model), watch, found.head.model.name, WORKING)
     if isinstance(ready, NoPrices):
         document = no_prices_report(found, ready)
-        commands.write(commands.rendered(document, options.format), options.output)
+        leaving.write(leaving.rendered(document, options.format), options.output)
         return [cli.NOT_ESTABLISHED]
     if options.column is not None:
-        line = commands.lines_asked(found.head.model, "", lines)[0]
+        line = arriving.lines_asked(found.head.model, "", lines)[0]
         return [_one_plan(found, ready, line, options)]
     return [_all_plans(found, ready, options, (watch, started))]
 
@@ -63,7 +64,7 @@ def _all_plans(
     except StoppedEarlyError as error:
         stopped = error.claim
     document = reports.plans_report(found, ready.partition, intervals, stopped, options.full)
-    commands.write(commands.rendered(document, options.format), options.output)
+    leaving.write(leaving.rendered(document, options.format), options.output)
     return cli.DONE if stopped is None else cli.NOT_ESTABLISHED
 
 
@@ -74,9 +75,9 @@ def _one_plan(found: Optimal, ready: Prices, line: int, options: argparse.Namesp
     if not _is_optimal(found, point.x, point.ray):
         sys.stderr.write("not established: the plan that was found fails the check\n")
         return cli.NOT_ESTABLISHED
-    commands.write(write_values("x", columns, point.x), options.output)
+    leaving.write(write_values("x", columns, point.x), options.output)
     if options.ray is not None and point.ray is not None:
-        commands.write(write_values("ray", columns, point.ray, sparse=True), options.ray)
+        leaving.write(write_values("ray", columns, point.ray, sparse=True), options.ray)
     written = options.ray is not None
     sys.stderr.write(reports.end_sentence(found, line, greatest, end, written) + "\n")
     return cli.DONE

@@ -5,7 +5,8 @@ from __future__ import annotations
 import argparse
 import time
 
-from lpview import cli, commands
+from lpview import cli
+from lpview.commands import leaving
 from lpview.outcomes import Optimal
 from lpview.priced import Between, StoppedEarlyError
 from lpview.prices import NoPrices
@@ -40,7 +41,7 @@ def write(found: Optimal, options: argparse.Namespace, watch: Watch, started: fl
     body, status = watched(work, watch, found.head.model.name, WORKING)
     asked = asking_for(found, f"--{options.about}")
     document = (*opening(asked), *body, *closing(asked))
-    commands.write(commands.rendered(document, options.format), options.output)
+    leaving.write(leaving.rendered(document, options.format), options.output)
     return status
 
 

@@ -8,12 +8,13 @@ import time
 from collections.abc import Sequence
 from dataclasses import replace
 
-from lpview import cli, commands
+from lpview import cli
 from lpview.blocks import InputError
 from lpview.blocks.mistakes import Mistake, quoted
-from lpview.curve_options import add_curve_options as add_options
+from lpview.commands import arriving, leaving
 from lpview.decimals import number_text
 from lpview.model import LinearProgram
+from lpview.options.curve import add_curve_options as add_options
 from lpview.outcomes import Examination, Optimal
 from lpview.prices.curve import Beyond, Curve, NoCurve, Why
 from lpview.prices.number import Number, Part, bound_of, side_of
@@ -59,7 +60,7 @@ def curve(options: argparse.Namespace) -> list[int]:
 def _examined(options: argparse.Namespace, watch: Watch) -> Examination:
     """Solve and check the model; an unknown column is told under the option that named it."""
     try:
-        return commands.examined(options.model, options, watch, [_line(options)])
+        return arriving.examined(options.model, options, watch, [_line(options)])
     except InputError as error:
         own = "--bound" if options.bound is not None else "--cost"
         told = [replace(m, field=own) if m.field == "--column" else m for m in error.mistakes]
@@ -76,7 +77,7 @@ def _line(options: argparse.Namespace) -> tuple[str, str]:
 def _number(found: Optimal, options: argparse.Namespace) -> Number:
     """The number that moves; raises `InputError` for a row without sides."""
     lp = found.head.model
-    line = commands.lines_asked(lp, "", [_line(options)])[0]
+    line = arriving.lines_asked(lp, "", [_line(options)])[0]
     if options.cost is not None:
         return Number(line, Part.COST)
     if options.bound is not None:
@@ -139,23 +140,23 @@ def _words(options: argparse.Namespace) -> list[str]:
 def _without_curve(found: Examination, options: argparse.Namespace) -> int:
     """What the check says, for an outcome that has no value curve."""
     if options.format == "text":
-        commands.write(commands.rendered(report(found), "text"), options.output)
+        leaving.write(leaving.rendered(report(found), "text"), options.output)
     elif options.format == "json":
-        commands.write(curve_data.as_json(found, None), options.output)
+        leaving.write(curve_data.as_json(found, None), options.output)
     else:
         source = found.head.request.source
         sys.stderr.write(f"{source}: no value curve: {verdict(found)}\n")
-    return commands.status(found)
+    return leaving.status(found)
 
 
 def _write(found: Optimal, made: Curve | NoCurve, options: argparse.Namespace) -> None:
     if options.format == "json":
-        commands.write(curve_data.as_json(found, made), options.output)
+        leaving.write(curve_data.as_json(found, made), options.output)
     elif options.format == "text":
         document = curve_report(found, made, options.steps > 0, options.ascii)
-        commands.write(commands.rendered(document, "text"), options.output)
+        leaving.write(leaving.rendered(document, "text"), options.output)
     elif isinstance(made, Curve):
-        commands.write(curve_data.as_csv(made), options.output)
+        leaving.write(curve_data.as_csv(made), options.output)
     else:
         sys.stderr.write(f"{found.head.request.source}: no value curve: {made.reason}\n")
 

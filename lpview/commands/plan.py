@@ -5,8 +5,9 @@ from __future__ import annotations
 import argparse
 from dataclasses import replace
 
-from lpview import cli, commands
+from lpview import cli
 from lpview.blocks import read_plan
+from lpview.commands import arriving, leaving
 from lpview.examination import examine
 from lpview.given import GivenPlan
 from lpview.kkt import FileNumbers
@@ -26,7 +27,7 @@ def check_plan(options: argparse.Namespace) -> list[int]:
     Raises `lpview.blocks.InputError` for a model, a plan or a limit that cannot be used.
     """
     source = options.models[0]
-    reading, data = commands.read(source, options)
+    reading, data = arriving.read(source, options)
     plan = read_plan(
         options.plan,
         reading.model,
@@ -36,16 +37,16 @@ def check_plan(options: argparse.Namespace) -> list[int]:
     )
     limits = limits_of(reading.model, source, options.limits)
     if data is not None:
-        source = commands.saved(data, options.output)
+        source = arriving.saved(data, options.output)
     # The second route is about the prices of a solver's answer, which is not the subject.
-    request = replace(commands.request(source, options), second_route=SecondRoute.NEVER)
+    request = replace(arriving.request(source, options), second_route=SecondRoute.NEVER)
     watch = Watch()
 
     def work() -> CheckedPlan:
         return _checked(reading, plan, limits, options.rounded, request, watch)
 
     checked = watched(work, watch, reading.model.name)
-    commands.write(_rendered(checked, options), options.output)
+    leaving.write(_rendered(checked, options), options.output)
     return [cli.DONE if checked.passed else cli.FAILED]
 
 
@@ -80,4 +81,4 @@ def _rendered(checked: CheckedPlan, options: argparse.Namespace) -> str:
         return render(checked)
     from lpview.report.plan import report
 
-    return commands.rendered(report(checked, options.full), options.format)
+    return leaving.rendered(report(checked, options.full), options.format)

@@ -10,9 +10,10 @@ from dataclasses import replace
 
 import numpy as np
 
-from lpview import cli, commands, price_about
+from lpview import cli
 from lpview.blocks import InputError, Mistake
 from lpview.blocks.mistakes import quoted
+from lpview.commands import about, arriving, leaving
 from lpview.outcomes import Examination, Optimal
 from lpview.priced import (
     Between,
@@ -43,21 +44,21 @@ def prices(options: argparse.Namespace) -> list[int]:
     if options.moves:
         return [_moved(found, options, watch)]
     if options.about:
-        return [price_about.write(found, options, watch, started)]
+        return [about.write(found, options, watch, started)]
     found, priced = worked_out(found, options, watch, started)
     text = _rendered(found, priced, options)
     if text:
-        commands.write(text, options.output)
-    return [cli.worst([commands.status(found), price_status(priced)])]
+        leaving.write(text, options.output)
+    return [cli.worst([leaving.status(found), price_status(priced)])]
 
 
 def _examined(options: argparse.Namespace, watch: Watch) -> Examination:
     """Solve and check the model; an unknown row is told under the option that named it."""
     if not options.moves:
-        return commands.examined(options.model, options, watch, options.lines)
+        return arriving.examined(options.model, options, watch, options.lines)
     rows = [("row", name) for name, _ in options.moves]
     try:
-        return commands.examined(options.model, options, watch, rows)
+        return arriving.examined(options.model, options, watch, rows)
     except InputError as error:
         told = [replace(m, field="--move") if m.field == "--row" else m for m in error.mistakes]
         raise InputError(told) from error
@@ -74,11 +75,11 @@ def without_prices(found: Examination, options: argparse.Namespace) -> int:
     if options.format == "csv":
         sys.stderr.write(f"{found.head.request.source}: {verdict(found)}\n")
     elif options.format == "json":
-        commands.write(json.render(found, [price_json.fields(None)]), options.output)
+        leaving.write(json.render(found, [price_json.fields(None)]), options.output)
     else:
         document = report(found, options.full)
-        commands.write(commands.rendered(document, options.format), options.output)
-    return commands.status(found)
+        leaving.write(leaving.rendered(document, options.format), options.output)
+    return leaving.status(found)
 
 
 def worked_out(
@@ -88,8 +89,8 @@ def worked_out(
 
     The command's time limit counts from ``started``, a reading of `time.monotonic`.
     """
-    step = price_about.steps(watch, options.time_limit, started)
-    ask = price_about.asking(watch, options.time_limit, started)
+    step = about.steps(watch, options.time_limit, started)
+    ask = about.asking(watch, options.time_limit, started)
 
     def work() -> Priced | NoPrices:
         ready = work_out(found, warm_model)
@@ -97,7 +98,7 @@ def worked_out(
             return ready
         return _asked(found, ready, options, step, ask)
 
-    result = watched(work, watch, found.head.model.name, price_about.WORKING)
+    result = watched(work, watch, found.head.model.name, about.WORKING)
     return (result.found if isinstance(result, Priced) else found), result
 
 
@@ -105,7 +106,7 @@ def _asked(
     found: Optimal, ready: Prices, options: argparse.Namespace, step: Between, ask: Ask
 ) -> Priced:
     if options.lines:
-        lines = commands.lines_asked(found.head.model, "", options.lines)
+        lines = arriving.lines_asked(found.head.model, "", options.lines)
         return price_lines(found, ready, lines, step)
     if options.command == "check" and options.summary:
         return price_lines(found, ready, summary_lines(found), step)
@@ -125,11 +126,11 @@ def _rendered(found: Optimal, priced: Priced | NoPrices, options: argparse.Names
         problem = reports.problem(priced)
         sys.stderr.write(f"{found.head.request.source}: {problem}\n" if problem else "")
         return price_json.as_csv(priced) if isinstance(priced, Priced) else ""
-    return commands.rendered(_document(found, priced, options), options.format)
+    return leaving.rendered(_document(found, priced, options), options.format)
 
 
 def _document(found: Optimal, priced: Priced | NoPrices, options: argparse.Namespace) -> Document:
-    lines = commands.lines_asked(found.head.model, "", options.lines)
+    lines = arriving.lines_asked(found.head.model, "", options.lines)
     if isinstance(priced, NoPrices):
         return reports.no_prices_report(found, priced, lines)
     if lines:
@@ -148,14 +149,14 @@ def _moved(found: Optimal, options: argparse.Namespace, watch: Watch) -> int:
         ready = work_out(found, warm_model)
         return ready if isinstance(ready, NoPrices) else move_together(ready, moves)
 
-    made = watched(work, watch, lp.name, price_about.WORKING)
+    made = watched(work, watch, lp.name, about.WORKING)
     known = isinstance(made, Together) and made.then is not Then.NOT_FOUND
     document = (
         reports.no_prices_report(found, made)
         if isinstance(made, NoPrices)
         else together_report(found, made)
     )
-    commands.write(commands.rendered(document, options.format), options.output)
+    leaving.write(leaving.rendered(document, options.format), options.output)
     return cli.DONE if known else cli.NOT_ESTABLISHED
 
 

@@ -4,8 +4,8 @@ from __future__ import annotations
 
 import argparse
 
-from lpview.input_options import wrong_plan_use
-from lpview.price_options import add_line_options
+from lpview.options.inputs import wrong_plan_use
+from lpview.options.prices import add_line_options
 
 
 def add_route_options(check: argparse.ArgumentParser) -> None:

@@ -1,0 +1,53 @@
+"""What every command ends with: text that is written, and an exit status."""
+
+from __future__ import annotations
+
+import os
+import sys
+from pathlib import Path
+from typing import TYPE_CHECKING
+
+from lpview import cli
+from lpview.outcomes import Examination, NoOptimum, Optimal
+from lpview.report.document import Document
+
+if TYPE_CHECKING:  # the check alone starts sooner without them
+    pass
+
+
+def status(found: Examination) -> int:
+    """The exit status of one examination."""
+    if isinstance(found, Optimal):
+        return cli.DONE if found.passed else cli.FAILED
+    return cli.NO_OPTIMUM if isinstance(found, NoOptimum) else cli.NOT_ESTABLISHED
+
+
+def rendered(document: Document, form: str) -> str:
+    """A document as text or Markdown."""
+    from lpview.report import markdown, text
+
+    return (markdown.render if form == "markdown" else text.render)(document)
+
+
+def write(text: str, output: str | None) -> None:
+    """Write to a file, whole or not at all, or to standard output."""
+    if output is not None:
+        replace_file(Path(output), text.encode())
+        return
+    sys.stdout.buffer.write(text.encode())
+    sys.stdout.buffer.flush()
+
+
+def replace_file(path: Path, data: bytes) -> None:
+    """Write a file whole or not at all; a device or pipe is written as it is."""
+    if path.exists() and not path.is_file():
+        path.write_bytes(data)
+        return
+    part = path.with_name(f".{path.name}.{os.getpid()}.part")
+    try:
+        part.write_bytes(data)
+        part.replace(path)
+    except OSError as error:
+        raise OSError(error.errno, error.strerror, str(path)) from error
+    finally:
+        part.unlink(missing_ok=True)

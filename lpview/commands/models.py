@@ -1,0 +1,32 @@
+"""The commands that write a model: ``lpview dual`` and ``convert``."""
+
+from __future__ import annotations
+
+import argparse
+from typing import TYPE_CHECKING
+
+from lpview import cli
+from lpview.blocks import write_blocks, write_labels
+from lpview.commands.arriving import read
+from lpview.commands.leaving import write
+
+if TYPE_CHECKING:  # the check alone starts sooner without them
+    pass
+
+
+def dual(options: argparse.Namespace) -> list[int]:
+    """``lpview dual``: the dual linear program, as blocks that lpview reads."""
+    from lpview.dual import build_dual
+
+    program = build_dual(read(options.model, options)[0].model).program
+    write(write_blocks(program), options.output)
+    return [cli.DONE]
+
+
+def convert(options: argparse.Namespace) -> list[int]:
+    """``lpview convert``: the same model as canonical blocks."""
+    reading, _ = read(options.model, options)
+    labels = write_labels(reading.model, reading.labels)
+    blocks = write_blocks(reading.model)
+    write(blocks + "\n" * bool(labels) + labels, options.output)
+    return [cli.DONE]
