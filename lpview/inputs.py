@@ -84,7 +84,8 @@ def _with_integers(reading: Reading, source: str, how: ReadAs) -> Reading:
         return relaxed(reading)
     if how.fix_integers is None:
         return linear(reading, source)
-    return fixed(reading, read_plan(how.fix_integers, reading.model, how.decimal), source)
+    plan = read_plan(how.fix_integers, reading.model, how.decimal, needed=reading.integers)
+    return fixed(reading, plan, source)
 
 
 def remarked(reading: Reading, remark: str) -> Reading:

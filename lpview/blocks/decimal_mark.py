@@ -1,7 +1,8 @@
 """The decimal mark of a file: point or comma, said by the user or recognised.
 
 In a file whose cells stand between commas it is a point unless the user says otherwise.
-In any other file the numbers of the whole file decide: the first mark that is followed
+In any other file (and in a plan whose model has decimal commas) the numbers of the whole file
+decide: the first mark that is followed
 by other than exactly three digits cannot be grouping. Nothing else is ever guessed.
 """
 
@@ -75,15 +76,18 @@ def recognised(source: Source, cells: Iterable[MarkedCell]) -> DecimalMark:
     if source.decimal is not None:
         said = source.decimal
         return DecimalMark(said == "comma", f"as --decimal {said} says")
-    if source.separator == ",":
+    is_point_usual = source.separator == "," and source.usual != "comma"
+    if is_point_usual:
         return DecimalMark()
     unclear: dict[str, MarkedCell] = {}
     for cell in cells:
         _, mark, places = _one_mark(cell.text)
-        if mark and len(places) != 3:
+        if mark and (len(places) != 3 or source.separator == ","):
             return DecimalMark(mark == ",", f"as on line {cell.line}")
         if mark:
             unclear.setdefault(mark, cell)
+    if source.usual is not None and len(unclear) < 2:
+        return DecimalMark(source.usual == "comma", f"as --decimal {source.usual} says")
     for mark, cell in unclear.items():
         if len(unclear) == 1:
             _tell_unclear(cell)

@@ -3,10 +3,13 @@
 from __future__ import annotations
 
 import csv
+import re
 from collections.abc import Iterator
 
 from lpview.blocks.mistakes import ERROR_CELLS, Place, Problem, quoted
 from lpview.blocks.source import SEPARATORS, Source
+
+_NUMBER_LIKE = re.compile(r"[+-]?[\d.,/]*\d[\d.,/]*([eE][+-]?\d+)?")
 
 _MOST_LINES = 5
 """Lines over which a quoted cell is followed to see whether it ends at all."""
@@ -50,6 +53,25 @@ def without_comments(source: Source, text: str, first: int) -> tuple[list[str], 
         if line.strip(blanks) and not ("#" in line and _is_any_comment(source, line))
     ]
     return [lines[place] for place in kept], [first + place for place in kept]
+
+
+def commented_data(
+    source: Source, text: str, first: int, width: int
+) -> tuple[tuple[int, str], ...]:
+    """Comments that read like data, such as a row that is called ``# of shelves``.
+
+    They have as many cells as their header, and a number in the last one that is filled.
+    """
+    found = []
+    for number, line in enumerate(text.split("\n") if "#" in text else (), first):
+        if "#" not in line or quote_problem(source, line):
+            continue
+        cells = source.cells(line)
+        filled = [cell for cell in cells if cell]
+        is_data = 1 < len(filled) <= width <= len(cells) and _NUMBER_LIKE.fullmatch(filled[-1])
+        if is_data and is_comment(cells[0]):
+            found.append((number, cells[0]))
+    return tuple(found)
 
 
 def _is_any_comment(source: Source, line: str) -> bool:

@@ -11,6 +11,7 @@ from pathlib import Path
 from types import MappingProxyType
 
 import numpy as np
+from numpy.typing import NDArray
 
 from lpview.blocks.cells import Cells, column, read_numbers
 from lpview.blocks.layout import PLAN_BLOCKS
@@ -20,6 +21,8 @@ from lpview.blocks.source import read_file
 from lpview.blocks.structure import Block, blocks_by_name
 from lpview.given import GivenPlan, Written
 from lpview.model import LinearProgram, Vector
+
+Mask = NDArray[np.bool_]
 
 IGNORE = "--ignore-unknown counts such names instead"
 """What to do about names that the model lacks."""
@@ -40,6 +43,8 @@ class _Lines:
     """All of them in order."""
     ignore_unknown: bool
     """Whether names that are none of these are counted instead of refused."""
+    advice: str
+    """What to do about them otherwise."""
 
     @property
     def index(self) -> Index:
@@ -52,6 +57,7 @@ def read_plan(
     lp: LinearProgram,
     decimal: str | None = None,
     *,
+    needed: Sequence[int] | None = None,
     complete: bool = False,
     ignore_unknown: bool = False,
 ) -> GivenPlan:
@@ -60,7 +66,10 @@ def read_plan(
     Parameters
     ----------
     decimal
-        ``"point"`` or ``"comma"``, the decimal mark of the file; None where it shows.
+        ``"point"`` or ``"comma"``, the decimal mark of the model's file, which is that of the
+        plan where its numbers show no other.
+    needed
+        The columns, by index, that the plan is asked for; None for all of them.
     complete
         Refuse a plan that leaves a column out. Otherwise such a column is 0, and is
         refused only where its bounds do not allow that.
@@ -70,16 +79,17 @@ def read_plan(
     Raises `InputError` with all mistakes found, if there are any.
     """
     mistakes = Mistakes()
-    source = replace(read_file(file, decimal=decimal), kinds=PLAN_BLOCKS, implied="x")
+    source = replace(read_file(file), kinds=PLAN_BLOCKS, implied="x", usual=decimal)
     blocks = blocks_by_name([source], mistakes)
-    columns = _Lines("column", lp.columns, ignore_unknown)
-    rows = _Lines("row", lp.rows, ignore_unknown)
+    advice = IGNORE if needed is None else ""
+    columns = _Lines("column", lp.columns, ignore_unknown, advice)
+    rows = _Lines("row", lp.rows, ignore_unknown, advice)
     unknown: list[str] = []
     x = _written(blocks["x"], columns, unknown)
     y = _written(blocks["y"], rows, unknown) if blocks["y"] else None
     z = _written(blocks["z"], columns, unknown) if blocks["z"] else None
     if blocks["x"] and not mistakes.among("x"):
-        _tell_left_out(lp, x, mistakes, file, complete)
+        _tell_left_out(lp, x, mistakes, file, _needed(lp, needed, complete))
     if blocks["z"] and not blocks["y"] and not mistakes.among("y"):
         mistakes.add(Mistake(file, "the block [y] beside [z]", "none"))
     mistakes.stop([file])
@@ -100,7 +110,7 @@ def _written(blocks: Sequence[Block], lines: _Lines, unknown: list[str]) -> Writ
         where = "[b]" if lines.kind == "row" else "[c]"
         known = _picked(names, kept)
         what = f"a {lines.kind} of the model's {where}"
-        places = look_up(known, lines.index, what, IGNORE)
+        places = look_up(known, lines.index, what, lines.advice)
         if places is None:
             continue
         values[places], listed[places] = numbers.values[kept], True
@@ -139,15 +149,24 @@ def half_units(texts: Sequence[str]) -> Vector:
     return halves
 
 
+def _needed(lp: LinearProgram, needed: Sequence[int] | None, complete: bool) -> Mask:
+    """Columns that a plan must list: all of those asked for, or those that cannot be 0."""
+    must = np.ones(lp.n, dtype=bool) if complete else (lp.lower > 0) | (lp.upper < 0)
+    if needed is not None:
+        asked = np.zeros(lp.n, dtype=bool)
+        asked[list(needed)] = True
+        must &= asked
+    return must
+
+
 def _tell_left_out(
-    lp: LinearProgram, x: Written, mistakes: Mistakes, file: str, complete: bool
+    lp: LinearProgram, x: Written, mistakes: Mistakes, file: str, needed: Mask
 ) -> None:
     """Tell of columns that are not listed and must be."""
-    out = ~x.listed
-    barred = out if complete else out & ((lp.lower > 0) | (lp.upper < 0))
-    places = np.flatnonzero(barred).tolist()
-    why = "none" if complete else "none, and its bounds do not allow 0"
+    places = np.flatnonzero(needed & ~x.listed).tolist()
     for place in places[:MOST_NAMED]:
+        allows = lp.lower[place] <= 0 <= lp.upper[place]
+        why = "none" if allows else "none, and its bounds do not allow 0"
         expected = f"a value for column {quoted(lp.columns[place])}"
         mistakes.add(Mistake(file, expected, why, block="x"))
     if len(places) > MOST_NAMED:

@@ -15,7 +15,7 @@ from lpview.blocks.coefficients import Coefficients, read_coefficients
 from lpview.blocks.ends import Piece, Rows, joined, read_bounds, read_rows
 from lpview.blocks.labels import read_labels
 from lpview.blocks.layout import LABELS
-from lpview.blocks.mistakes import Mistakes
+from lpview.blocks.mistakes import Mistakes, quoted
 from lpview.blocks.names import Index, name_problem, names_alike
 from lpview.blocks.objective import Objective, read_objective, read_offset
 from lpview.blocks.source import PACKED, Source, from_bytes, read_file, read_path
@@ -165,4 +165,15 @@ def _notes(contents: _Contents) -> Notes:
         rows_without_coefficients=tuple(rows.names[row] for row in empty_rows),
         names_alike=names_alike(objective.names) + names_alike(rows.names),
         most_decimals=MappingProxyType(present),
+        remarks=_commented(contents),
     )
+
+
+def _commented(contents: _Contents) -> tuple[str, ...]:
+    """What is said of comments that may have been meant as data."""
+    every = [each for blocks in contents.blocks.values() for b in blocks for each in b.commented]
+    if not every:
+        return ()
+    line, text = every[0]
+    lines = "1 comment that reads" if len(every) == 1 else f"{len(every)} comments that read"
+    return (f"{lines} like data left out: first {quoted(text)} on line {line}",)

@@ -55,6 +55,8 @@ class Source:
     """Name of the block that a file which begins with its header needs no line for."""
     decimal: str | None = None
     """The decimal mark as the user said it, "point" or "comma"; None if it was not said."""
+    usual: str | None = None
+    """The mark of another file that belongs to this one, for where this one shows none."""
 
     @property
     def wanted(self) -> str:

@@ -11,10 +11,12 @@ from dataclasses import dataclass, field, replace
 
 import numpy as np
 
+from lpview.blocks.block_lines import ANY_SEPARATOR, bracket_lines, is_block_line
 from lpview.blocks.decimal_mark import DecimalMark, MarkedCell, recognised
 from lpview.blocks.even import even_cells, marked
-from lpview.blocks.layout import Header, Kind, Kinds, block_lines, fixed_header, owner
+from lpview.blocks.layout import Header, Kind, block_lines, fixed_header, owner
 from lpview.blocks.lines import (
+    commented_data,
     error_comments,
     filled_lines,
     quote_problem,
@@ -25,7 +27,6 @@ from lpview.blocks.lines import (
 from lpview.blocks.mistakes import Mistake, Mistakes, Place, Problem, printable, quoted
 from lpview.blocks.source import Source
 
-_ANY_SEPARATOR = ",;\t "
 _NUMBERS = frozenset(("cost", "lower", "upper", "coefficient", "rhs", "value"))
 
 
@@ -51,6 +52,8 @@ class Block:
     """Cells below the header, line by line, each as long as the header."""
     lines: Sequence[int] = ()
     """Lines of the file on which they stand."""
+    commented: Sequence[tuple[int, str]] = ()
+    """Comments that read like a line of the table: line and first cell of each."""
     mark: DecimalMark = field(default_factory=DecimalMark)
     """The decimal mark of the file."""
 
@@ -124,14 +127,14 @@ def _marked_cells(block: Block) -> Iterator[MarkedCell]:
 def _parts(source: Source, place: Place) -> list[_Part]:
     text = source.text
     starts: list[tuple[int, int, list[str]]] = []
-    for start, end in _bracket_lines(text):
+    for start, end in bracket_lines(text):
         line = text[start:end]
         if quote_problem(source, line):
             continue  # the block that holds the line will say so
         cells = source.cells(line)
         # Within a block of one line nothing else may stand, so nothing is data.
         table = bool(starts) and starts[-1][2][0] != "[offset]"
-        if _is_block_line(cells, table, source.kinds):
+        if is_block_line(cells, table, source.kinds):
             starts.append((start, end + 1, cells))
     before = text[: starts[0][0]] if starts else text
     if _begins_with_header(source, before, place):
@@ -157,39 +160,6 @@ def _begins_with_header(source: Source, before: str, place: Place) -> bool:
     return words in source.kinds[source.implied].headers
 
 
-def _bracket_lines(text: str) -> Iterator[tuple[int, int]]:
-    """Where lines begin and end whose first cell may begin with a bracket."""
-    bracket = text.find("[")
-    while bracket >= 0:
-        start = text.rfind("\n", 0, bracket) + 1
-        end = text.find("\n", bracket)
-        end = len(text) if end < 0 else end
-        if not text[start:bracket].replace('"', "").strip():
-            yield start, end
-        bracket = text.find("[", end)
-
-
-def _is_block_line(cells: list[str], in_table: bool, kinds: Kinds) -> bool:
-    """Whether a line whose first cell may be in brackets begins a block.
-
-    Names in brackets are allowed in a table, so that a line with further cells is a
-    block line there only where its block takes an argument, and then not where it
-    reads as a cost; or where it goes on with the header, by mistake.
-    """
-    rest = [cell for cell in cells[1:] if cell]
-    name = cells[0] if rest else cells[0].rstrip(_ANY_SEPARATOR)
-    if not (name.startswith("[") and name.endswith("]")):
-        return False
-    if not rest or not in_table:
-        return True
-    kind = kinds.get(name[1:-1])
-    if kind is not None and owner(tuple(rest), kinds) == kind.name:
-        return True
-    if kind is None or not kind.argument or len(rest) > 1 or not cells[1]:
-        return False
-    return kind.name != "c" or rest[0][0] not in "0123456789+-.,"
-
-
 def _first_line(source: Source) -> str:
     """What a file must begin with, in words."""
     if source.block:
@@ -207,13 +177,13 @@ def _check_beginning(source: Source, before: str, first: str, place: Place) -> N
         problem = Problem(expected, quoted(cells[0]))
         place.wrong(number, "block line", separator_problem(source, cells) or problem)
         return
-    if source.block and first and first.rstrip(_ANY_SEPARATOR) != f"[{source.block}]":
+    if source.block and first and first.rstrip(ANY_SEPARATOR) != f"[{source.block}]":
         line = before.count("\n") + 1
         place.wrong(line, "block line", Problem(expected, quoted(first)))
 
 
 def _block(source: Source, part: _Part, mistakes: Mistakes) -> Block | None:
-    name = part.cells[0].rstrip(_ANY_SEPARATOR)
+    name = part.cells[0].rstrip(ANY_SEPARATOR)
     kind = source.kinds.get(name[1:-1])
     if kind is None:
         place = Place(source.file, "", mistakes)
@@ -284,6 +254,7 @@ def _with_cells(block: Block, text: str) -> Block:
     lines: Sequence[int] = range(first, first + body.count("\n") + 1)
     even = None if "#" in body else even_cells(body, width, source.separator)
     if even is None:
+        block = replace(block, commented=commented_data(source, body, first, width))
         kept, lines = without_comments(source, body, first)
         even = even_cells("\n".join(kept), width, source.separator) if kept else None
     if even is not None or not lines:

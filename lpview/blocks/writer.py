@@ -28,8 +28,9 @@ def write_blocks(lp: LinearProgram) -> str:
     """
     _check_names(lp)
     columns, rows = _cells(lp.columns), _cells(lp.rows)
-    # "[offset],5" is a block line, so that this column needs a longer line.
-    together = "[offset]" in lp.columns
+    # "[offset],5" is a block line, however it is spelled, so that such a column needs a
+    # longer line.
+    together = any(name[1:-1].strip().casefold() == "offset" for name in lp.columns if "[" in name)
     blocks = [_objective(lp, columns, together)]
     if lp.offset != 0:
         blocks.append(["[offset]," + _texts(np.array([lp.offset]), _odd(lp, "offset"))[0]])

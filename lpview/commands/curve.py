@@ -156,6 +156,7 @@ def _write(found: Optimal, made: Curve | NoCurve, options: argparse.Namespace) -
         document = curve_report(found, made, options.steps > 0, options.ascii)
         leaving.write(leaving.rendered(document, "text"), options.output)
     elif isinstance(made, Curve):
+        leaving.tell_notes(found.head.request.source, found.head.notes)
         leaving.write(curve_data.as_csv(made), options.output)
     else:
         sys.stderr.write(f"{found.head.request.source}: no value curve: {made.reason}\n")

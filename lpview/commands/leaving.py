@@ -5,14 +5,11 @@ from __future__ import annotations
 import os
 import sys
 from pathlib import Path
-from typing import TYPE_CHECKING
 
 from lpview import cli
 from lpview.outcomes import Examination, NoOptimum, Optimal
+from lpview.reading import Notes
 from lpview.report.document import Document
-
-if TYPE_CHECKING:  # the check alone starts sooner without them
-    pass
 
 
 def status(found: Examination) -> int:
@@ -20,6 +17,14 @@ def status(found: Examination) -> int:
     if isinstance(found, Optimal):
         return cli.DONE if found.passed else cli.FAILED
     return cli.NO_OPTIMUM if isinstance(found, NoOptimum) else cli.NOT_ESTABLISHED
+
+
+def tell_notes(source: str, notes: Notes) -> None:
+    """What a report would say of the reading, on standard error, where data are written."""
+    if notes.scope:
+        sys.stderr.write(f"{source}: {notes.scope}\n")
+    if notes.remarks:
+        sys.stderr.write(f"{source}: noticed while reading: {', '.join(notes.remarks)}\n")
 
 
 def rendered(document: Document, form: str) -> str:

@@ -8,7 +8,7 @@ from typing import TYPE_CHECKING
 from lpview import cli
 from lpview.blocks import write_blocks, write_labels
 from lpview.commands.arriving import read
-from lpview.commands.leaving import write
+from lpview.commands.leaving import tell_notes, write
 
 if TYPE_CHECKING:  # the check alone starts sooner without them
     pass
@@ -18,14 +18,16 @@ def dual(options: argparse.Namespace) -> list[int]:
     """``lpview dual``: the dual linear program, as blocks that lpview reads."""
     from lpview.dual import build_dual
 
-    program = build_dual(read(options.model, options)[0].model).program
-    write(write_blocks(program), options.output)
+    reading, _ = read(options.model, options)
+    tell_notes(options.model, reading.notes)
+    write(write_blocks(build_dual(reading.model).program), options.output)
     return [cli.DONE]
 
 
 def convert(options: argparse.Namespace) -> list[int]:
     """``lpview convert``: the same model as canonical blocks."""
     reading, _ = read(options.model, options)
+    tell_notes(options.model, reading.notes)
     labels = write_labels(reading.model, reading.labels)
     blocks = write_blocks(reading.model)
     write(blocks + "\n" * bool(labels) + labels, options.output)

@@ -75,6 +75,7 @@ def _one_plan(found: Optimal, ready: Prices, line: int, options: argparse.Namesp
     if not _is_optimal(found, point.x, point.ray):
         sys.stderr.write("not established: the plan that was found fails the check\n")
         return cli.NOT_ESTABLISHED
+    leaving.tell_notes(found.head.request.source, found.head.notes)
     leaving.write(write_values("x", columns, point.x), options.output)
     if options.ray is not None and point.ray is not None:
         leaving.write(write_values("ray", columns, point.ray, sparse=True), options.ray)

@@ -108,7 +108,7 @@ def _asked(
     if options.lines:
         lines = arriving.lines_asked(found.head.model, "", options.lines)
         return price_lines(found, ready, lines, step)
-    if options.command == "check" and options.summary:
+    if options.summary:
         return price_lines(found, ready, summary_lines(found), step)
     if options.format in ("json", "csv"):
         return price_everything(found, ready, step)
@@ -123,6 +123,7 @@ def _rendered(found: Optimal, priced: Priced | NoPrices, options: argparse.Names
     if options.format == "json":
         return json.render(found, [price_json.fields(priced)])
     if options.format == "csv":
+        leaving.tell_notes(found.head.request.source, found.head.notes)
         problem = reports.problem(priced)
         sys.stderr.write(f"{found.head.request.source}: {problem}\n" if problem else "")
         return price_json.as_csv(priced) if isinstance(priced, Priced) else ""

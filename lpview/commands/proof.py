@@ -78,7 +78,9 @@ def proof_status(found: Examination, proof: Proof) -> int:
 
 def verify(options: argparse.Namespace) -> list[int]:
     """``lpview verify``: check a certificate with the kernel, which shares nothing with us."""
-    canonical = write_blocks(arriving.read(options.model, options)[0].model)
+    reading, _ = arriving.read(options.model, options)
+    leaving.tell_notes(options.model, reading.notes)
+    canonical = write_blocks(reading.model)
     try:
         certificate = Path(options.certificate).read_bytes()
     except OSError as error:

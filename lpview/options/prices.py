@@ -42,6 +42,7 @@ def add_prices_options(parser: argparse.ArgumentParser) -> None:
         )
     parser.add_argument("--format", choices=("text", "markdown", "csv", "json"), default="text")
     parser.add_argument("--full", action="store_true", help="list every line, however many")
+    parser.set_defaults(summary=False)
 
 
 def add_plans_options(parser: argparse.ArgumentParser) -> None:

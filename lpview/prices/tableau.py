@@ -103,7 +103,7 @@ class Tableau:
             yield block, self.price_direction(self._units(block))
 
     def _blocks(self, lines: Index) -> Iterator[Index]:
-        size = max(1, BLOCK_NUMBERS // self.lines.value.size)
+        size = max(1, BLOCK_NUMBERS // max(self.lines.value.size, 1))
         for start in range(0, lines.size, size):
             yield lines[start : start + size]
 
