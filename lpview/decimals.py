@@ -24,7 +24,8 @@ NO_NUMBER = "a number"
 """What is expected of a text that is written as no number is."""
 
 _NUMBER = re.compile(r"[+-]?(\d+\.?\d*|\.\d+)([eE][+-]?\d+)?", re.ASCII)
-_FRACTION = re.compile(r"[+-]?\d+/\d+", re.ASCII)
+_FRACTION = re.compile(r"[+-]?(0|[1-9]\d*)/(0|[1-9]\d*)", re.ASCII)
+"""Without zeros before its digits, as only a date has them: 01/03."""
 
 
 class NumberError(ValueError):

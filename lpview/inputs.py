@@ -7,8 +7,9 @@ from dataclasses import dataclass, replace
 from fractions import Fraction
 from pathlib import Path
 
-from lpview.blocks import read_label_file, read_model, read_model_bytes, read_plan
-from lpview.model import LinearProgram, frozen_odd
+from lpview.blocks import InputError, read_label_file, read_model, read_model_bytes, read_plan
+from lpview.blocks.mistakes import Mistake
+from lpview.model import LinearProgram, Sense, frozen_odd
 from lpview.reading import Reading
 
 MPS_ENDINGS = (".mps", ".mps.gz")
@@ -65,8 +66,7 @@ def _as_asked(reading: Reading, source: str, how: ReadAs) -> Reading:
     if reading.integers or how.relax or how.fix_integers is not None:
         reading = _with_integers(reading, source, how)
     if how.negated:
-        said = "costs negated back, as --negated asks"
-        reading = remarked(replace(reading, model=negated(reading.model)), said)
+        reading = _turned_back(reading, source)
     if how.labels is not None:
         own = bool(reading.labels.sha256)
         labels = read_label_file(how.labels, reading.model)
@@ -74,6 +74,16 @@ def _as_asked(reading: Reading, source: str, how: ReadAs) -> Reading:
         if own:
             reading = remarked(reading, "the model's own labels replaced by those of --labels")
     return reading
+
+
+def _turned_back(reading: Reading, source: str) -> Reading:
+    """A model that was exported as a minimization of negated costs, as it was meant."""
+    if reading.model.sense is Sense.MAXIMIZE:
+        advice = "only a minimization of negated costs is turned back"
+        wrong = Mistake(source, "minimize with --negated", "maximize", advice=advice)
+        raise InputError([wrong])
+    said = "costs negated back, as --negated asks: minimize became maximize"
+    return remarked(replace(reading, model=negated(reading.model)), said)
 
 
 def _with_integers(reading: Reading, source: str, how: ReadAs) -> Reading:

@@ -52,6 +52,7 @@ _ADVICE = [
         (r"[\u2010-\u2015\u2212\ufe63\uff0d]\s*[\d.,].*", "write the minus as -, on the keyboard"),
         (r"[+-]\s+[\d.,].*", "take the blank after the sign out"),
         (rf"(?:{_DATE})(?:[\sT,]+{_CLOCK}Z?)?", _DATE_ADVICE),
+        (r"0\d*/\d+|\d+/0\d+", _DATE_ADVICE),
         (_CLOCK, "write a time as a number of hours or minutes"),
         (rf"[+-]?{_GROUPS}(?:[.,]\d*)?", _GROUPED_ADVICE),
         (r"[+-]?\d[\d.,]*[.,]\d*[.,]\d+", _GROUPED_ADVICE),

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import re
+import unicodedata
 from collections.abc import Mapping, Sequence
 
 import numpy as np
@@ -108,8 +109,11 @@ def look_up(
 
 
 def names_alike(names: Sequence[str]) -> tuple[tuple[str, str], ...]:
-    """Pairs of names that differ only in case or in blanks inside them."""
-    folded = _INNER_BLANKS.sub("", "\n".join(names).casefold()).split("\n")
+    """Pairs of names that differ only in case, in inner blanks or in how a letter is coded."""
+    joined = "\n".join(names)
+    if not joined.isascii():
+        joined = unicodedata.normalize("NFKC", joined)
+    folded = _INNER_BLANKS.sub("", joined.casefold()).split("\n")
     if len(set(folded)) == len(names) or not names:
         return ()
     first: dict[str, str] = {}

@@ -7,8 +7,10 @@ from collections.abc import Iterator
 import numpy as np
 
 from lpview.blocks.mistakes import quoted
+from lpview.decimals import number_text
+from lpview.mps.bounds import UPPER
 from lpview.mps.fields import Fields
-from lpview.mps.matrix import DROPPED
+from lpview.mps.matrix import DROPPED, OBJECTIVE
 from lpview.mps.parts import Parts
 from lpview.mps.sections import Sections
 
@@ -20,6 +22,7 @@ def remarks(parts: Parts, fields: Fields, sections: Sections) -> tuple[str, ...]
     """All remarks on a file."""
     return (
         *_rows(parts),
+        *_constant(parts),
         *_coefficients(parts),
         *_bounds(parts),
         *_long_numerals(parts),
@@ -42,6 +45,17 @@ def _rows(parts: Parts) -> Iterator[str]:
             f"the first N row {quoted(objective)} is the objective; left out, with "
             f"{_count(lost, 'number')}: {names}"
         )
+
+
+def _constant(parts: Parts) -> Iterator[str]:
+    numerals = parts.rhs.numerals
+    for k, row in enumerate(parts.rhs.row.tolist()):
+        if parts.rows.kept[row] == OBJECTIVE and numerals.numbers.values[k] != 0:
+            constant = number_text(-float(numerals.numbers.values[k]))
+            yield (
+                f"right-hand side {numerals.texts[k]} of the objective on line "
+                f"{numerals.lines[k]} taken as the constant {constant} (readers differ here)"
+            )
 
 
 def _coefficients(parts: Parts) -> Iterator[str]:
@@ -68,6 +82,14 @@ def _bounds(parts: Parts) -> Iterator[str]:
             f"{_count(len(bounds.opened), 'column')} with a negative upper bound and no lower "
             f"bound, taken as having none (readers differ here): first {quoted(names[first])} on "
             f"line {bounds.lines[first]}"
+        )
+    bounded = {column for kind, column, _ in bounds.records if kind in UPPER}
+    below = [column for kind, column, _ in bounds.records if kind == "MI" and column not in bounded]
+    if below:
+        yield (
+            f"{_count(len(below), 'column')} with MI alone, taken as having no upper bound "
+            f"(readers differ here): first {quoted(names[below[0]])} on line "
+            f"{bounds.lines[below[0]]}"
         )
     if bounds.binary:
         first = bounds.binary[0]

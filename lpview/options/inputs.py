@@ -3,6 +3,9 @@
 from __future__ import annotations
 
 import argparse
+import re
+
+_AMOUNT = re.compile(r"\+?(\d+\.?\d*|\.\d+)([eE][+-]?\d+)?", re.ASCII)
 
 
 def add_input_options(command: argparse.ArgumentParser) -> None:
@@ -89,12 +92,12 @@ def wrong_plan_use(options: argparse.Namespace) -> str:
         ("--prove", options.prove),
         ("--prices", options.prices),
         ("--families", options.families),
-        ("--row and --column", options.lines),
+        ("--row or --column", options.lines),
         ("--summary", options.summary),
     ]
     for name, given in beside:
         if given:
-            return f"expected --plan or {name}, got both"
+            return f"expected --plan without {name}"
     return ""
 
 
@@ -106,10 +109,7 @@ def _option(name: str, value: str) -> list[str]:
 
 def _limit(text: str) -> tuple[str, float]:
     pattern, mark, amount = text.rpartition("=")
-    try:
-        value = float(amount)
-    except ValueError:
-        value = -1.0
+    value = float(amount) if _AMOUNT.fullmatch(amount) else -1.0
     if not mark or not pattern or not 0 <= value < float("inf"):
         raise argparse.ArgumentTypeError(
             f"expected PATTERN=AMOUNT with an amount of 0 or more, got {text}"

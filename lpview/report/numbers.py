@@ -23,8 +23,10 @@ def in_full(value: float) -> str:
 
 
 def residual(value: float) -> str:
-    """The size of a residual or a tolerance."""
-    return number(value, RESIDUAL_DIGITS)
+    """The size of a residual or a tolerance: ``2.1e-9``, ``330``."""
+    if math.isinf(value) or math.isnan(value):
+        return str(value)
+    return number(float(f"{value:.{RESIDUAL_DIGITS}g}"))
 
 
 def count(amount: int, noun: str) -> str:

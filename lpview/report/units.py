@@ -40,7 +40,8 @@ class Units:
 
     def many(self, amount: float) -> str:
         """An amount of what its limits move by: ``40 kWh``, ``1 unit``, ``2 units``."""
-        return f"{number(amount)} {self.own or ('unit' if amount == 1 else 'units')}"
+        text = number(amount)
+        return f"{text} {self.own or ('unit' if text == '1' else 'units')}"
 
 
 NO_UNITS = Units()

@@ -49,17 +49,23 @@ class LedgerPane(LinesPane):
         cells = max(self.size.width - 4, 20)
         self._totals = [part for text in sentences for part in wrapped(text, cells)]
 
-    def on_resize(self) -> None:
-        """Sentences break anew."""
-        self._wrap()
-        super().on_resize()
-
-    def show_prices(self) -> None:
-        """Show what has been found about the line meanwhile; the cursor keeps its term."""
+    def _wrap_anew(self) -> None:
+        """Break them again; the cursor keeps its term, or stays among them."""
         before = len(self._totals)
         self._wrap()
         if self.cursor >= before:
             self.cursor += len(self._totals) - before
+        else:
+            self.cursor = min(self.cursor, max(len(self._totals) - 1, 0))
+
+    def on_resize(self) -> None:
+        """Sentences break anew."""
+        self._wrap_anew()
+        super().on_resize()
+
+    def show_prices(self) -> None:
+        """Show what has been found about the line meanwhile."""
+        self._wrap_anew()
         self.show_cursor()
 
     @property

@@ -70,7 +70,7 @@ def run(*arguments: str, capsys: pytest.CaptureFixture[str]) -> tuple[int, str, 
 
 
 def test_every_report_says_that_costs_were_negated(capsys: pytest.CaptureFixture[str]) -> None:
-    said = "costs negated back, as --negated asks"
+    said = "costs negated back, as --negated asks: minimize became maximize"
     for command in ("check", "prove", "prices", "plans", "curve"):
         line = ["--row", "bench"] if command == "curve" else []
         status, out, _ = run(command, "x.csv", "--negated", *line, capsys=capsys)
@@ -119,7 +119,7 @@ WRONG = {
     ("check", "x.csv", "--complete"): "expected --complete together with --plan",
     ("check", "x.csv", "--limit", "h*=1"): "expected --limit together with --plan",
     ("check", "x.csv", "y.csv", "--plan", "p"): "expected --plan together with one MODEL",
-    ("check", "x.csv", "--plan", "p", "--prove"): "expected --plan or --prove, got both",
+    ("check", "x.csv", "--plan", "p", "--prove"): "expected --plan without --prove",
     ("check", "x.csv", "--plan", "p", "--limit", "h=-1"): (
         "argument --limit: expected PATTERN=AMOUNT with an amount of 0 or more, got h=-1"
     ),
