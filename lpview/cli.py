@@ -145,7 +145,7 @@ def _parser() -> argparse.ArgumentParser:
         )
         add_input_options(command)
         if name != "open":
-            command.add_argument("--output", metavar="FILE", help="write here, not to the screen")
+            command.add_argument("--output", metavar="FILE", help="write to this file")
     for name in ("check", "open", "prove", "prices", "plans", "curve"):
         _add_solve_options(made[name])
     add_plan_options(made["check"])
@@ -171,8 +171,9 @@ def _parser() -> argparse.ArgumentParser:
     return parser
 
 
-def _add_solve_options(command: argparse.ArgumentParser) -> None:
+def _add_solve_options(parser: argparse.ArgumentParser) -> None:
     """What every command that solves can be told."""
+    command = parser.add_argument_group("how it is solved and judged")
     command.add_argument(
         "--tolerance", type=_positive, default=1e-9, metavar="SIZE",
         help="largest scaled residual that passes (default 1e-9)",
@@ -182,11 +183,14 @@ def _add_solve_options(command: argparse.ArgumentParser) -> None:
         help="scaled size up to which a slack or a price counts as zero (default 1e-9)",
     )  # fmt: skip
     command.add_argument(
-        "--method", choices=("choose", "simplex", "interior-point"), default="choose"
+        "--method", choices=("choose", "simplex", "interior-point"), default="choose",
+        help="how to solve (default choose: the solver decides)",
+    )  # fmt: skip
+    command.add_argument(
+        "--time-limit", type=_positive, metavar="SECONDS", help="for the whole command"
     )
-    command.add_argument("--time-limit", type=_positive, metavar="SECONDS")
     # Prices need a basis, and no second route to them.
-    command.set_defaults(no_crossover=False, second_route="never")
+    parser.set_defaults(no_crossover=False, second_route="never")
 
 
 def _wrong_use(options: argparse.Namespace) -> str:

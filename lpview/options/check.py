@@ -27,12 +27,15 @@ def add_route_options(check: argparse.ArgumentParser) -> None:
 
 def add_report_options(check: argparse.ArgumentParser) -> None:
     """What the check can be told of its report."""
-    check.add_argument("--format", choices=("text", "markdown", "json"), default="text")
+    check.add_argument(
+        "--format", choices=("text", "markdown", "json"), default="text",
+        help="how to write the report (default text)",
+    )  # fmt: skip
     check.add_argument("--full", action="store_true", help="list every line, however many")
     add_line_options(check, "print the ledger of this {} instead of the report; may be repeated")
     check.add_argument(
         "--families", action="store_true",
-        help="print families of lines, grouped by what their names begin with",
+        help="print families of lines: by the group of their label, else by their names",
     )  # fmt: skip
     check.add_argument(
         "--summary", action="store_true",

@@ -8,8 +8,9 @@ import re
 _AMOUNT = re.compile(r"\+?(\d+\.?\d*|\.\d+)([eE][+-]?\d+)?", re.ASCII)
 
 
-def add_input_options(command: argparse.ArgumentParser) -> None:
+def add_input_options(parser: argparse.ArgumentParser) -> None:
     """How a model is to be read, the same for every command."""
+    command = parser.add_argument_group("how the model is read")
     command.add_argument(
         "--decimal", choices=("point", "comma"),
         help="the decimal mark of CSV files in which it does not show",
@@ -29,28 +30,27 @@ def add_input_options(command: argparse.ArgumentParser) -> None:
     )  # fmt: skip
 
 
-def add_plan_options(check: argparse.ArgumentParser) -> None:
+def add_plan_options(parser: argparse.ArgumentParser) -> None:
     """What the check can be told of a plan from elsewhere."""
+    check = parser.add_argument_group("a plan from elsewhere")
     check.add_argument(
         "--plan", metavar="PLAN.csv",
         help="check this plan instead of the solver's; its block [x], and [y], [z] if known",
     )  # fmt: skip
     check.add_argument(
         "--rounded", action="store_true",
-        help="with --plan: exit 0 also where conditions hold only within the plan's rounding",
+        help="exit 0 also where conditions hold only within the plan's rounding",
     )  # fmt: skip
     check.add_argument(
         "--limit", dest="limits", type=_limit, action="append", default=[],
         metavar="PATTERN=AMOUNT",
-        help="with --plan: largest violation allowed on the rows of these names (* and ? "
+        help="largest violation allowed on the rows of these names (* and ? "
         "stand for any characters), in the row's own unit; may be repeated",
     )  # fmt: skip
-    check.add_argument(
-        "--complete", action="store_true", help="with --plan: refuse columns that it leaves out"
-    )
+    check.add_argument("--complete", action="store_true", help="refuse columns that it leaves out")
     check.add_argument(
         "--ignore-unknown", action="store_true",
-        help="with --plan: count names that the model lacks instead of refusing them",
+        help="count names that the model lacks instead of refusing them",
     )  # fmt: skip
 
 

@@ -40,7 +40,10 @@ def add_prices_options(parser: argparse.ArgumentParser) -> None:
         about.add_argument(
             f"--{name}", dest="about", action="store_const", const=name, default="", help=text
         )
-    parser.add_argument("--format", choices=("text", "markdown", "csv", "json"), default="text")
+    parser.add_argument(
+        "--format", choices=("text", "markdown", "csv", "json"), default="text",
+        help="how to write what was found (default text)",
+    )  # fmt: skip
     parser.add_argument("--full", action="store_true", help="list every line, however many")
     parser.set_defaults(summary=False)
 
@@ -52,8 +55,12 @@ def add_plans_options(parser: argparse.ArgumentParser) -> None:
         help="write an optimal plan in which this variable is as small or large as in any",
     )  # fmt: skip
     end = parser.add_mutually_exclusive_group()
-    end.add_argument("--least", dest="end", action="store_const", const="least")
-    end.add_argument("--greatest", dest="end", action="store_const", const="greatest")
+    end.add_argument(
+        "--least", dest="end", action="store_const", const="least", help="as small as in any"
+    )
+    end.add_argument(
+        "--greatest", dest="end", action="store_const", const="greatest", help="as large as in any"
+    )
     parser.add_argument(
         "--ray", metavar="FILE",
         help="if there is no least or greatest value, write the ray along which it goes on",

@@ -13,12 +13,10 @@ from lpview.report.names import fitted, line_name
 from lpview.report.numbers import count, in_full, number, residual
 from lpview.report.units import (
     in_units,
-    label_of,
     labelled,
     objective_unit,
     price_header,
     units_of,
-    with_column,
 )
 from lpview.verdict import Verdict
 
@@ -66,10 +64,7 @@ def _conditions(found: Optimal) -> Table:
         "relative",
         "tolerance",
     )
-    table = Table("", header, rows, (False, False, False, True, True, True, True))
-    worst = [-1 if verdict.worst is None else verdict.worst for verdict in found.verdicts]
-    labels = [fitted(label_of(found.head, k).label) if k >= 0 else "" for k in worst]
-    return with_column(table, 3, "label", labels) if any(labels) else table
+    return Table("", header, rows, (False, False, False, True, True, True, True))
 
 
 def _condition(found: Optimal, verdict: Verdict) -> tuple[str, ...]:

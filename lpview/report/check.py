@@ -12,7 +12,7 @@ from lpview.proof.results import Proof, ProvedOptimal
 from lpview.repair.search import Infeasible
 from lpview.report import answer, certificate
 from lpview.report.document import Block, Command, Document, Facts, Pairs, Sentence, Table
-from lpview.report.heads import noticed, title
+from lpview.report.heads import most_decimals, noticed, title
 from lpview.report.names import safe
 from lpview.report.numbers import count, residual
 from lpview.report.proof import proof_facts, proof_verdict
@@ -118,8 +118,6 @@ def provenance(head: Head) -> Pairs:
     request, run = head.request, head.run
     options = ", ".join(f"{name} {value}" for name, value in run.options.items())
     rescaled = "; lines rescaled by powers of two" if run.rescaled else ""
-    most = ", ".join(f"{block} {places}" for block, places in head.notes.most_decimals.items())
-    decimals = f"most decimals {most}"
     labels = head.labels.sha256
     return (
         ("model SHA-256", head.sha256),
@@ -127,7 +125,8 @@ def provenance(head: Head) -> Pairs:
         (
             "made with",
             f"lpview {__version__}, {run.solver}, Python {platform.python_version()}; tolerance "
-            f"{residual(request.tolerance)}, zero {residual(request.zero)}; {decimals}",
+            f"{residual(request.tolerance)}, zero {residual(request.zero)}; "
+            f"{most_decimals(head)}",
         ),
         ("solver options", (options or "none") + rescaled),
     )

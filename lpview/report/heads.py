@@ -35,6 +35,12 @@ def noticed(head: Head) -> list[str]:
     return ["noticed while reading: " + "; ".join(told)] if told else []
 
 
+def most_decimals(head: Head) -> str:
+    """Digits after the decimal mark, at most, by block: a spreadsheet exports what it displays."""
+    found = head.notes.most_decimals.items()
+    return "most decimals " + (", ".join(f"{block} {most}" for block, most in found) or "none")
+
+
 def noticed_sentences(head: Head) -> tuple[Sentence, ...]:
     """The same as a sentence of its own."""
     return tuple(map(Sentence, noticed(head)))

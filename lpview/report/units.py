@@ -15,6 +15,8 @@ from lpview.report.document import Table
 from lpview.report.names import fitted
 from lpview.report.numbers import number
 
+LONGEST_LABEL = 24
+"""Cells that a label takes in a table, where numbers need the room."""
 LONGEST_UNIT = 20
 """Cells that a unit may take."""
 
@@ -87,7 +89,7 @@ def labelled(head: Head, table: Table, lines: Sequence[int], units: bool = False
     table's first rows, numbered as in `lpview.kkt`; -1 stands for none.
     """
     known = [label_of(head, line) if line >= 0 else Label() for line in lines]
-    columns = [("label", [fitted(one.label) for one in known])]
+    columns = [("label", [fitted(one.label, LONGEST_LABEL) for one in known])]
     if units:
         columns.append(("unit", [fitted(one.unit, LONGEST_UNIT) for one in known]))
     for title, cells in reversed(columns):
