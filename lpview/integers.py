@@ -72,8 +72,12 @@ def fixed(reading: Reading, plan: GivenPlan, source: str) -> Reading:
     unlisted = [j for j in values if not plan.x.listed[j]]
     if unlisted:
         first = quoted(reading.model.columns[unlisted[0]])
-        where = f"not listed in {printable(plan.file)}, fixed at 0: first {first}"
-        reading = _remarked(reading, f"{_columns(unlisted)} {where}")
+        verb, was = ("is", "was") if len(unlisted) == 1 else ("are", "were")
+        remark = (
+            f"{len(unlisted)} of {_columns(reading.integers)} {verb} not in "
+            f"{printable(plan.file)} and {was} fixed at 0, the first {first}"
+        )
+        reading = _remarked(reading, remark)
     scope = (
         f"{_columns(reading.integers)} fixed at the values of {printable(plan.file)}; "
         "prices hold only for these integer values"

@@ -139,13 +139,22 @@ def _picked(names: Cells, kept: Sequence[int]) -> Cells:
 
 
 def half_units(texts: Sequence[str]) -> Vector:
-    """Half a unit of the last written digit of each number; 0 for fractions."""
+    """Half a unit of the last written digit of each number; 0 for fractions.
+
+    A zero is as coarse as its written digits, however large its exponent: ``0e5`` is ``0``,
+    while ``0e-5`` is ``0.00000``.
+    """
     halves = np.zeros(len(texts))
     for place, text in enumerate(texts):
         match = _DECIMAL.fullmatch(text)
-        if match is not None:
-            exponent = int(match[3] or 0) - len(match[2] or "")
-            halves[place] = float(f"5e{exponent - 1}")
+        if match is None:
+            continue
+        whole, places = match[1], match[2] or ""
+        # An exponent may have more digits than `int` reads; beyond 400 they are all the same.
+        exponent = int(min(max(float(match[3] or 0), -400.0), 400.0))
+        if not (whole + places).strip("0"):
+            exponent = min(exponent, 0)
+        halves[place] = float(f"5e{exponent - len(places) - 1}")
     return halves
 
 

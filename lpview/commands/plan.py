@@ -47,7 +47,7 @@ def check_plan(options: argparse.Namespace) -> list[int]:
 
     checked = watched(work, watch, reading.model.name)
     leaving.write(_rendered(checked, options), options.output)
-    return [cli.DONE if checked.passed else cli.FAILED]
+    return [cli.DONE if checked.accepted else cli.FAILED]
 
 
 def _checked(

@@ -9,32 +9,34 @@ written digit, each line by itself. `measured` carries the rounding through the 
 
 from lpview.planned.checked import CheckedPlan, checked_plan
 from lpview.planned.judging import (
+    Failing,
     Judged,
     PlanVerdict,
     Standing,
-    Violated,
+    failing_lines,
     judged,
     violated,
     worst_limit,
 )
 from lpview.planned.limits import Limits, limits_of
 from lpview.planned.measuring import Interval, Measured, measured
-from lpview.planned.optimum import Against, Left, Multipliers, against_optimum
+from lpview.planned.optimum import Against, LineCost, Multipliers, against_optimum
 
 __all__ = [
     "Against",
     "CheckedPlan",
+    "Failing",
     "Interval",
     "Judged",
-    "Left",
     "Limits",
+    "LineCost",
     "Measured",
     "Multipliers",
     "PlanVerdict",
     "Standing",
-    "Violated",
     "against_optimum",
     "checked_plan",
+    "failing_lines",
     "judged",
     "limits_of",
     "measured",

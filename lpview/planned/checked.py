@@ -5,11 +5,11 @@ from __future__ import annotations
 from dataclasses import dataclass
 
 from lpview.kkt import FileNumbers
-from lpview.outcomes import Examination, Optimal
+from lpview.outcomes import Examination, NoOptimum, Optimal
 from lpview.planned.judging import Judged, judged
 from lpview.planned.limits import Limits
 from lpview.planned.measuring import Measured
-from lpview.planned.optimum import Against, against_optimum
+from lpview.planned.optimum import Against, Multipliers, against_optimum
 
 
 @dataclass(frozen=True, eq=False)
@@ -29,9 +29,28 @@ class CheckedPlan:
 
     @property
     def passed(self) -> bool:
-        """Whether every condition that can be judged passed, as asked for; whatever the
-        solver says."""
+        """Whether every condition that can be judged passed as written; whatever the solver
+        says."""
+        return not self.judgement.failing(rounded=False)
+
+    @property
+    def accepted(self) -> bool:
+        """The same, or within the rounding, where that is enough."""
         return not self.judgement.failing(self.rounded)
+
+    @property
+    def optimal(self) -> bool | None:
+        """Whether some dual values, its own or those of the optimum, make the plan optimal, as
+        written; None where that is not known."""
+        if not self.judgement.feasible:
+            return False
+        own = self.found.plan.y is not None and self.passed
+        if isinstance(self.outcome, NoOptimum):
+            return None if own else False
+        multipliers = self.against.multipliers if self.against else None
+        if own or multipliers is Multipliers.THOSE_FOUND:
+            return True
+        return False if multipliers is Multipliers.NONE else None
 
 
 def checked_plan(

@@ -109,15 +109,15 @@ class Judged:
 
 
 @dataclass(frozen=True)
-class Violated:
-    """A line outside its sides or bounds, as written, by more than is allowed."""
+class Failing:
+    """A line that fails a condition, as written: its residual is more than is allowed."""
 
     line: int
     """Numbered as in `lpview.kkt`."""
-    violation: float
-    """By how much, in its unit."""
+    size: float
+    """Its absolute residual."""
     allowed: float
-    """What is allowed there, in its unit."""
+    """What is allowed there, in the same unit."""
     within: bool
     """Whether it holds within the rounding."""
 
@@ -128,20 +128,30 @@ def judged(found: Measured, tolerance: float, limits: Limits) -> Judged:
     return Judged(verdicts, tolerance, limits)
 
 
-def violated(found: Measured, judgement: Judged) -> tuple[Violated, ...]:
-    """Every violated line, the worst beside what is allowed first."""
-    written = found.written.residuals[Condition.PRIMAL]
-    within = found.within[Condition.PRIMAL]
-    limits = judgement.limits
+def violated(found: Measured, judgement: Judged) -> tuple[Failing, ...]:
+    """Every line outside its sides or bounds, the worst over what is allowed first."""
+    return failing_lines(found, judgement, Condition.PRIMAL)
+
+
+def failing_lines(found: Measured, judgement: Judged, condition: Condition) -> tuple[Failing, ...]:
+    """Every line that fails a condition, the worst over what is allowed first.
+
+    None where the condition cannot be judged, and for the gap, which is of no line.
+    """
+    if condition is Condition.GAP or condition not in found.within:
+        return ()
+    written, within = found.written.residuals[condition], found.within[condition]
     tolerance = judgement.tolerance
+    limits = judgement.limits if condition is Condition.PRIMAL else None
     excess = _beside_allowed(written, tolerance, limits)
     lines = np.flatnonzero(~(excess <= 1.0))
     order = lines[np.lexsort((-written.scaled[lines], -excess[lines]))]
     holds = _beside_allowed(within, tolerance, limits) <= 1.0
-    scaled_up = tolerance * np.maximum(1.0, written.term)
-    allowed = np.where(limits.given, limits.amount, scaled_up)
+    allowed = tolerance * np.maximum(1.0, written.term)
+    if limits is not None:
+        allowed = np.where(limits.given, limits.amount, allowed)
     return tuple(
-        Violated(k, float(written.absolute[k]), float(allowed[k]), bool(holds[k]))
+        Failing(k, float(written.absolute[k]), float(allowed[k]), bool(holds[k]))
         for k in order.tolist()
     )
 

@@ -40,13 +40,13 @@ class Multipliers(enum.Enum):
     """The gap to the optimum exceeds the tolerance."""
     ON_THE_EDGE = "not settled at this tolerance"
     """The gap is within the tolerance, a product is not."""
-    NOT_FEASIBLE = "no dual values make a plan optimal that is not feasible"
+    NOT_FEASIBLE = "not judged, for the plan is not feasible"
     """The plan is not feasible as written."""
 
 
 @dataclass(frozen=True)
-class Left:
-    """What one line leaves on the table."""
+class LineCost:
+    """What one line costs a plan against the optimum."""
 
     line: int
     """Numbered as in `lpview.kkt`."""
@@ -55,7 +55,7 @@ class Left:
     distance: float
     """Distance of the plan to the side that the price names; negative beyond it."""
     product: float
-    """``|price|`` times that distance, objective units."""
+    """``|price|`` times that distance, objective units; negative where a violation gains."""
 
 
 @dataclass(frozen=True)
@@ -76,9 +76,20 @@ class Against:
     tolerance."""
     gap: float
     """Between the plan's objective and the dual objective of the optimum's dual values:
-    what all lines leave on the table together."""
-    left: tuple[Left, ...]
-    """Every line that leaves something on the table, the most first."""
+    what all lines cost together, however little each does."""
+    lines: tuple[LineCost, ...]
+    """Every line whose product is not zero, by what counts as zero, scaled; the largest
+    first."""
+
+    @property
+    def costing(self) -> tuple[LineCost, ...]:
+        """Lines that cost something."""
+        return tuple(one for one in self.lines if one.product > 0)
+
+    @property
+    def gaining(self) -> tuple[LineCost, ...]:
+        """Lines whose violation gains something."""
+        return tuple(one for one in self.lines if one.product < 0)
 
 
 def against_optimum(
@@ -103,7 +114,7 @@ def against_optimum(
         multipliers=_multipliers(judgement, beside),
         could_be=_could_be(found, judgement, beside, optimum),
         gap=beside.gap,
-        left=_left(beside),
+        lines=_lines(beside, best.head.request.zero),
     )
 
 
@@ -144,12 +155,14 @@ def _all_within(part: Residuals, tolerance: float) -> bool:
     return bool((part.scaled <= tolerance).all())
 
 
-def _left(beside: Measurement) -> tuple[Left, ...]:
+def _lines(beside: Measurement, zero: float) -> tuple[LineCost, ...]:
     price, distance = prices(beside), distances(beside)
     product = np.abs(price) * distance
     term = beside.residuals[Condition.COMPLEMENTARITY].term
-    lines = np.flatnonzero(np.abs(product) > NOTHING * term)
+    # Where nothing but 0 counts as zero, the rounding of the check itself still does.
+    least = np.maximum(zero * np.maximum(1.0, term), NOTHING * term)
+    lines = np.flatnonzero(np.abs(product) > least)
     order = lines[np.argsort(-np.abs(product[lines]), kind="stable")]
     return tuple(
-        Left(k, float(price[k]), float(distance[k]), float(product[k])) for k in order.tolist()
+        LineCost(k, float(price[k]), float(distance[k]), float(product[k])) for k in order.tolist()
     )

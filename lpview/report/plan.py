@@ -2,24 +2,44 @@
 
 from __future__ import annotations
 
+import math
+from collections.abc import Sequence
+
 import numpy as np
 
+from lpview.kkt import Condition
 from lpview.model import LinearProgram, Vector
-from lpview.planned import CheckedPlan, PlanVerdict, Standing, violated
+from lpview.outcomes import Head
+from lpview.planned import (
+    CheckedPlan,
+    Failing,
+    LineCost,
+    Multipliers,
+    PlanVerdict,
+    Standing,
+    failing_lines,
+    violated,
+)
 from lpview.report.check import CAUTION, provenance, shape
 from lpview.report.document import Block, Command, Document, Facts, Sentence, Table
 from lpview.report.heads import noticed, title
-from lpview.report.names import fitted, line_name, safe
-from lpview.report.numbers import number, residual
-from lpview.report.plan_words import facts, verdict
-from lpview.report.units import label_of, labelled, price_header, with_column
+from lpview.report.names import line_name, safe
+from lpview.report.numbers import count, number, residual
+from lpview.report.plan_verdict import not_shown, verdict
+from lpview.report.plan_words import LINES_OF, facts, how_it_fails
+from lpview.report.units import amount, labelled, objective_unit, price_header
 
 MOST_VIOLATED = 10
 """Violated lines shown unless the full report is asked for."""
-MOST_LEFT = 7
-"""Lines shown that leave something on the table, unless the full report is asked for."""
+MOST_COSTING = 7
+"""Lines shown that cost or gain something, unless the full report is asked for."""
+MOST_OF_EACH = 3
+"""The same where both kinds are shown."""
+DIGITS = 12
+"""Significant digits of the value and side of a violated line."""
 
 _PASSED = {True: "passed", False: "FAILED"}
+_WORST_FIRST = "worst first, by {} over what is allowed"
 
 
 def report(checked: CheckedPlan, full: bool = False) -> Document:
@@ -27,13 +47,16 @@ def report(checked: CheckedPlan, full: bool = False) -> Document:
     head = checked.outcome.head
     plan = checked.found.plan
     words = f"{title(head)} with {safe(plan.file)}: {verdict(checked)}"
+    beside = not_shown(checked)
     return (
         Sentence(words, strong=True),
         Sentence("; ".join([shape(head.model), *noticed(head)])),
+        *((Sentence(beside),) if beside else ()),
         _conditions(checked),
         Facts(facts(checked)),
         *_violated(checked, full),
-        *_left(checked, full),
+        *(_failing(checked) if full else ()),
+        *_against(checked, full),
         Facts((("plan SHA-256", plan.sha256), *provenance(head))),
         Command("reproduce", head.request.command),
         Sentence(CAUTION),
@@ -41,25 +64,25 @@ def report(checked: CheckedPlan, full: bool = False) -> Document:
 
 
 def _conditions(checked: CheckedPlan) -> Table:
-    verdicts = checked.judgement.verdicts
+    """The conditions; without dual values only the one that does not need any."""
     header = (
         *("condition", "as written", "within rounding", "worst line"),
         *("scaled", "absolute", "tolerance"),
     )
-    rows = tuple(_condition(checked, verdict) for verdict in verdicts)
-    table = Table("", header, rows, (False, False, False, False, True, True, True))
-    worst = [-1 if v.worst is None or v.worst.line is None else v.worst.line for v in verdicts]
-    labels = [fitted(label_of(checked.outcome.head, k).label) if k >= 0 else "" for k in worst]
-    return with_column(table, 4, "label", labels) if any(labels) else table
+    rows = tuple(
+        _condition(checked, verdict)
+        for verdict in checked.judgement.verdicts
+        if verdict.standing is not Standing.NO_PRICES
+    )
+    return Table("", header, rows, (False, False, False, False, True, True, True))
 
 
 def _condition(checked: CheckedPlan, verdict: PlanVerdict) -> tuple[str, ...]:
     name, worst = verdict.condition.value, verdict.worst
     tolerance = residual(checked.judgement.tolerance)
     if verdict.written is None or verdict.within is None:
-        standing = verdict.standing.value
-        also = standing if verdict.standing is Standing.BY_DEFINITION else "not judged"
-        return (name, standing, also, "none", "not computed", "not computed", tolerance)
+        holds = "by definition"
+        return (name, holds, holds, "none", "not computed", "not computed", tolerance)
     passed = (_PASSED[verdict.written.passed], _PASSED[verdict.within.passed])
     if worst is None:
         return (name, *passed, "none", "0", "0", tolerance)
@@ -74,20 +97,18 @@ def _violated(checked: CheckedPlan, full: bool) -> tuple[Block, ...]:
     shown = lines if full else lines[:MOST_VIOLATED]
     if not lines:
         return ()
-    lp, values = checked.found.model, _values(checked)
+    values = _values(checked)
     rows = tuple(
         (
-            line_name(lp, one.line),
-            number(float(values[one.line])),
-            side_text(checked, one.line),
-            number(one.violation),
-            number(one.allowed),
-            "yes" if one.within else "no",
+            line_name(checked.found.model, one.line),
+            *_value_and_side(checked, one.line, float(values[one.line])),
+            *_sizes(one),
         )
         for one in shown
     )
+    order = _WORST_FIRST.format("violation")
     table = Table(
-        f"violated lines, the worst first: {len(shown)} of {len(lines)}",
+        f"violated lines, {order}: {len(shown)} of {len(lines)}",
         ("line", "value", "side", "violation", "allowed", "within rounding"),
         rows,
         (False, True, True, True, True, False),
@@ -95,15 +116,28 @@ def _violated(checked: CheckedPlan, full: bool) -> tuple[Block, ...]:
     return (labelled(checked.outcome.head, table, [one.line for one in shown], units=True),)
 
 
-def side_text(checked: CheckedPlan, line: int) -> str:
-    """The side of a violated line that is violated, as ``<= 10``."""
+def _sizes(one: Failing) -> tuple[str, str, str]:
+    return number(one.size), number(one.allowed), "yes" if one.within else "no"
+
+
+def _value_and_side(checked: CheckedPlan, line: int, value: float) -> tuple[str, str]:
+    """Both to so many digits that they are not the same where the numbers are not."""
+    relation, end = side_of(checked, line)
+    digits = DIGITS
+    while number(value, digits) == number(end, digits) and value != end:
+        digits += 1
+    return number(value, digits), f"{relation} {number(end, digits)}"
+
+
+def side_of(checked: CheckedPlan, line: int) -> tuple[str, float]:
+    """The side of a violated line that is violated, as ``("<=", 10.0)``."""
     lp, found = checked.found.model, checked.found.written
     below = np.concatenate([found.rows.below, found.columns.below])[line]
     above = np.concatenate([found.rows.above, found.columns.above])[line]
     low, high = _ends(lp, line)
     if low == high:
-        return f"= {number(low)}"
-    return f">= {number(low)}" if below < above else f"<= {number(high)}"
+        return "=", low
+    return (">=", low) if below < above else ("<=", high)
 
 
 def _ends(lp: LinearProgram, line: int) -> tuple[float, float]:
@@ -117,27 +151,72 @@ def _values(checked: CheckedPlan) -> Vector:
     return np.concatenate([found.rows.value, found.columns.value])
 
 
-def _left(checked: CheckedPlan, full: bool) -> tuple[Block, ...]:
-    """What lines leave on the table, where the plan is feasible and not optimal."""
+def _failing(checked: CheckedPlan) -> tuple[Block, ...]:
+    """All lines that fail a condition on prices, a table for each condition."""
+    return tuple(
+        _failing_table(checked, condition, lines)
+        for condition in LINES_OF
+        if (lines := failing_lines(checked.found, checked.judgement, condition))
+    )
+
+
+def _failing_table(checked: CheckedPlan, condition: Condition, lines: Sequence[Failing]) -> Table:
+    rows = tuple(
+        (
+            line_name(checked.found.model, one.line),
+            how_it_fails(checked, condition, one.line),
+            *_sizes(one),
+        )
+        for one in lines
+    )
+    order = _WORST_FIRST.format("residual")
+    table = Table(
+        f"lines that fail {condition.value}, {order}: {len(lines)} of {len(lines)}",
+        ("line", LINES_OF[condition], "residual", "allowed", "within rounding"),
+        rows,
+        (False, False, True, True, False),
+    )
+    return labelled(checked.outcome.head, table, [one.line for one in lines])
+
+
+def _against(checked: CheckedPlan, full: bool) -> tuple[Block, ...]:
+    """What lines cost and what violations gain, where the plan is feasible and not optimal."""
     against, head = checked.against, checked.outcome.head
-    if against is None or not checked.judgement.feasible or not against.left:
+    if against is None or not checked.judgement.feasible:
         return ()
-    shown = against.left if full else against.left[:MOST_LEFT]
+    if against.multipliers is Multipliers.THOSE_FOUND:
+        return ()
+    most = MOST_OF_EACH if against.costing and against.gaining else MOST_COSTING
+    return tuple(
+        _cost_table(head, what, lines, len(lines) if full else most)
+        for what, lines in (
+            ("what each line costs against the optimum", against.costing),
+            ("what the allowed violations gain", against.gaining),
+        )
+        if lines
+    )
+
+
+def _cost_table(head: Head, what: str, lines: Sequence[LineCost], most: int) -> Table:
+    shown = lines[:most]
+    gain = lines[0].product < 0
+    distance = "violation" if gain else "distance to its side"
     rows = tuple(
         (
             line_name(head.model, one.line),
             number(one.price),
-            number(one.distance),
-            number(one.product),
+            number(abs(one.distance)),
+            number(abs(one.product)),
         )
         for one in shown
     )
+    together = amount(abs(math.fsum(one.product for one in lines)), objective_unit(head))
+    of = count(len(lines), "line")
     table = Table(
-        "what lines leave on the table by the prices of the optimum: "
-        f"{len(shown)} of {len(against.left)}, together {number(against.gap)}"
+        f"{what}: {len(shown)} of {of}, together {together} by the prices of the optimum"
         f"{price_header(head)}",
-        ("line", "price", "distance to its side", "price x distance"),
+        ("line", "price", distance, "|price| x " + ("violation" if gain else "distance")),
         rows,
         (False, True, True, True),
     )
-    return (labelled(head, table, [one.line for one in shown], units=True),)
+    return labelled(head, table, [one.line for one in shown], units=True)

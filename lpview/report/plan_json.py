@@ -1,11 +1,54 @@
 """The check of a plan from elsewhere as JSON, format 1; README.md documents every field.
 
 The answer that is checked is the plan, and so the fields about an answer are about it;
-``status`` and ``certificate`` are about the model, as ever.
+``status`` and ``certificate`` are about the model, as ever, ``answer`` is null. What needs
+dual values is null where the plan has none. A *line* is ``{"row": name}`` or ``{"column":
+name}``. Fields that are here only:
+
+``passed``
+    Whether every condition that can be judged passed as written, whatever was asked for.
+``accepted``
+    The same, or with ``--rounded`` within the rounding: true for exit status 0.
+``residuals``, each
+    ``standing``: "judged", "no prices given", or "holds by definition" (no reduced costs
+    given); ``passed`` is null unless "judged". ``worst``: the line worst over what is allowed.
+    ``limit``: the limit of that row, if it has one, which then counts in place of
+    ``tolerance``. ``within_rounding``: ``absolute``, ``scaled``, ``relative`` and ``passed``
+    once more, for the least residuals within the rounding. ``failing``: all lines that fail
+    it as written, the worst over what is allowed first: a line with ``residual``,
+    ``allowed`` (both in the line's unit) and ``within_rounding`` (whether it passes there);
+    empty for the duality gap, which is of no line.
+``constraints``, each
+    ``limit``: the row's own limit, or null.
+``variables``, each
+    ``listed``: whether the plan has a value for it, else it is 0; ``half_unit``: half a unit
+    of the last digit written, 0 for fractions and for columns not listed.
+``plan``
+    ``file``, ``sha256``; ``rounded``: whether ``--rounded`` was given; ``feasible`` and
+    ``feasible_within_rounding``; ``optimal``: whether dual values, its own or those of the
+    optimum, make it optimal as written: true, false (also where it is not feasible), or null
+    where that is not known; ``columns_listed``, ``columns_not_listed``; ``unknown``: names
+    that the model lacks; ``coarsest``: ``column`` and ``half_unit`` of the coarsest value,
+    null where all are exact; ``objective_least`` and ``objective_greatest`` within the
+    rounding; ``violated``: lines outside their sides or bounds as written, the worst over
+    what is allowed first, with ``violation``, ``allowed`` and ``within_rounding``;
+    ``limits``: null without any, else ``rows`` (how many have one), and of the row that is
+    ``worst`` over its limit the ``violation`` and the ``limit``; ``optimum``.
+``plan.optimum``, null where no checked optimum is known
+    ``objective``: the optimal one; ``distance``: how much worse the plan's objective is in
+    the direction of the sense, negative where it is better; ``relative``: that over the size
+    of the optimal objective, null where that is 0; ``dual_values``: in words, whether dual
+    values make the plan optimal; ``possible_within_rounding``: false where no plan within
+    the rounding is optimal; ``lines``: what each line costs against the optimum, without
+    those that cost nothing by ``--zero``, the largest first: a line with ``price`` (of the
+    optimum), ``distance`` (to the side that the price names, negative beyond it) and
+    ``product`` (size of the price times distance, negative where a violation gains);
+    ``lines_together``: the sum of these products.
 """
 
 from __future__ import annotations
 
+import math
 from typing import Any
 
 import numpy as np
@@ -14,7 +57,7 @@ from lpview.kkt import Side
 from lpview.marks import Flag, mark
 from lpview.model import Vector
 from lpview.outcomes import Optimal
-from lpview.planned import CheckedPlan, PlanVerdict, violated, worst_limit
+from lpview.planned import CheckedPlan, PlanVerdict, failing_lines, violated, worst_limit
 from lpview.planned.judging import Found
 from lpview.report import json
 from lpview.report.json import plain
@@ -35,6 +78,7 @@ def fields(checked: CheckedPlan) -> dict[str, Any]:
     m = checked.found.model.m
     return {
         "passed": checked.passed,
+        "accepted": checked.accepted,
         "objective": _objective(checked),
         "residuals": [_residual(checked, verdict) for verdict in checked.judgement.verdicts],
         "constraints": _constraints(checked, flags[:m]),
@@ -68,6 +112,15 @@ def _residual(checked: CheckedPlan, verdict: PlanVerdict) -> dict[str, Any]:
             **_sizes(verdict.within),
             "passed": verdict.within.passed if verdict.within else None,
         },
+        "failing": [
+            {
+                **_line(checked, one.line),
+                "residual": plain(one.size),
+                "allowed": plain(one.allowed),
+                "within_rounding": one.within,
+            }
+            for one in failing_lines(checked.found, checked.judgement, verdict.condition)
+        ],
     }
 
 
@@ -167,6 +220,7 @@ def _plan(checked: CheckedPlan) -> dict[str, Any]:
         "rounded": checked.rounded,
         "feasible": judgement.feasible,
         "feasible_within_rounding": judgement.feasible_within,
+        "optimal": checked.optimal,
         "columns_listed": int(np.count_nonzero(plan.x.listed)),
         "columns_not_listed": plan.x.unlisted,
         "unknown": list(plan.unknown),
@@ -176,8 +230,8 @@ def _plan(checked: CheckedPlan) -> dict[str, Any]:
         "violated": [
             {
                 **_line(checked, one.line),
-                "violation": plain(one.violation),
-                "allowed": one.allowed,
+                "violation": plain(one.size),
+                "allowed": plain(one.allowed),
                 "within_rounding": one.within,
             }
             for one in violated(checked.found, judgement)
@@ -219,13 +273,14 @@ def _optimum(checked: CheckedPlan) -> dict[str, Any] | None:
         "relative": None if against.relative is None else plain(against.relative),
         "dual_values": against.multipliers.value,
         "possible_within_rounding": against.could_be,
-        "left_on_the_table": [
+        "lines": [
             {
                 **_line(checked, one.line),
                 "price": plain(one.price),
                 "distance": plain(one.distance),
                 "product": plain(one.product),
             }
-            for one in against.left
+            for one in against.lines
         ],
+        "lines_together": plain(math.fsum(one.product for one in against.lines)),
     }

@@ -1,87 +1,36 @@
-"""The verdict on a plan from elsewhere, and what is known about it, in words."""
+"""What is known about a plan from elsewhere besides its verdict, in words."""
 
 from __future__ import annotations
 
 import numpy as np
 
 from lpview.given import Written
-from lpview.outcomes import Examination, NoOptimum, NotEstablished, Optimal
-from lpview.planned import Against, CheckedPlan, Multipliers, violated, worst_limit
+from lpview.kkt import Condition
+from lpview.outcomes import NoOptimum, NotEstablished, Optimal
+from lpview.planned import (
+    Against,
+    CheckedPlan,
+    Multipliers,
+    failing_lines,
+    worst_limit,
+)
+from lpview.planned.measuring import distances, prices
 from lpview.repair.search import Infeasible
 from lpview.report.document import Pairs
 from lpview.report.names import fitted, line_name
 from lpview.report.numbers import count, in_full, number, residual
+from lpview.report.plan_verdict import away, not_shown
 from lpview.report.units import amount, in_units, objective_unit, units_of
 
+MOST_NAMED = 5
+"""Lines that are named of each condition on prices that fails."""
 
-def verdict(checked: CheckedPlan) -> str:
-    """What the check of a plan comes to, in one sentence."""
-    judgement = checked.judgement
-    if checked.found.plan.y is not None:
-        return _verdict_with_prices(checked)
-    if judgement.feasible:
-        return f"feasible as written{_beside_optimum(checked)}: {_holds(checked, 'row and bound')}"
-    lines = violated(checked.found, judgement)
-    beyond = sum(not one.within for one in lines)
-    broken = f"{count(len(lines), 'line')} violated"
-    if beyond:
-        return f"NOT FEASIBLE as written nor within its rounding: {broken}, {beyond} beyond it"
-    each = "which" if len(lines) == 1 else "each of which, by itself,"
-    accepted = _accepted(checked)
-    return f"NOT FEASIBLE as written: {broken}, {each} holds within its rounding{accepted}"
-
-
-def _accepted(checked: CheckedPlan) -> str:
-    """What is said where a plan that fails as written passes all the same."""
-    return "; accepted, as --rounded asks" if checked.passed else ""
-
-
-def _verdict_with_prices(checked: CheckedPlan) -> str:
-    judgement = checked.judgement
-    failing = [condition.value for condition in judgement.failing(rounded=False)]
-    still = [condition.value for condition in judgement.failing(rounded=True)]
-    if not failing:
-        every = _holds(checked, "condition")
-        return f"optimal as written, verified by its own prices: {every}"
-    if still == failing:
-        return f"NOT VERIFIED as written nor within its rounding: the check fails {listed(failing)}"
-    start = f"NOT VERIFIED as written: the check fails {listed(failing)}"
-    if not still:
-        each = "within its rounding every condition holds, line by line"
-        return f"{start}; {each}{_accepted(checked)}"
-    return f"{start}; within its rounding still {listed(still)}"
-
-
-def _holds(checked: CheckedPlan, what: str) -> str:
-    own = " or within its own limit" if checked.judgement.limits.given.any() else ""
-    return f"every {what} holds at {residual(checked.judgement.tolerance)} scaled{own}"
-
-
-def _beside_optimum(checked: CheckedPlan) -> str:
-    """How the first line goes on about a feasible plan."""
-    against = checked.against
-    if against is None:
-        return "; " + _without_optimum(checked.outcome)
-    if against.multipliers is Multipliers.THOSE_FOUND:
-        return " and optimal"
-    away = amount(abs(against.distance), objective_unit(checked.outcome.head))
-    if against.multipliers is Multipliers.ON_THE_EDGE:
-        return f", {away} from the optimum, within the tolerance of it but not line by line"
-    if against.distance < 0:
-        return f", {away} better than the optimum, which only the violations allowed make possible"
-    return f", {away} from the optimum"
-
-
-def _without_optimum(outcome: Examination) -> str:
-    if isinstance(outcome, NoOptimum):
-        infeasible = isinstance(outcome.certificate, Infeasible)
-        return "yet the model is infeasible" if infeasible else "but no plan is optimal"
-    return "the optimum is not known"
-
-
-def listed(parts: list[str]) -> str:
-    """``a``, ``a and b``, ``a, b and c``."""
-    return ", ".join(parts[:-1]) + (" and " if parts[:-1] else "") + parts[-1]
+LINES_OF = {
+    Condition.DUAL: "wrong sign",
+    Condition.STATIONARITY: "stationarity",
+    Condition.COMPLEMENTARITY: "product not zero",
+}
+"""Conditions on the prices of lines, and what is said of a line that fails one."""
 
 
 def facts(checked: CheckedPlan) -> Pairs:
@@ -90,10 +39,54 @@ def facts(checked: CheckedPlan) -> Pairs:
         ("plan", _columns(checked)),
         ("rounding", _rounding(checked)),
         *_limits(checked),
+        *_prices(checked),
         ("objective", _objective(checked)),
         ("optimum", _optimum(checked)),
         *_multipliers(checked),
     )
+
+
+def _prices(checked: CheckedPlan) -> Pairs:
+    """That there are no prices, or the lines that fail the conditions on them."""
+    if checked.found.plan.y is None:
+        none = "the plan file has none, so only primal feasibility is judged"
+        return (("dual values", none),)
+    return tuple(
+        (fails, text)
+        for condition, fails in LINES_OF.items()
+        if (text := _failing(checked, condition))
+    )
+
+
+def _failing(checked: CheckedPlan, condition: Condition) -> str:
+    lines = failing_lines(checked.found, checked.judgement, condition)
+    if not lines:
+        return ""
+    lp, named = checked.found.model, lines[:MOST_NAMED]
+    worst = [
+        f"{line_name(lp, one.line)} ({how_it_fails(checked, condition, one.line)})" for one in named
+    ]
+    if len(lines) > len(named):
+        worst.append(f"and {len(lines) - len(named)} more")
+    beyond = sum(not one.within for one in lines)
+    order = ", worst first" if len(lines) > 1 else ""
+    return f"{count(len(lines), 'line')}, {beyond} beyond the rounding{order}: {', '.join(worst)}"
+
+
+def how_it_fails(checked: CheckedPlan, condition: Condition, line: int) -> str:
+    """The numbers by which a line fails a condition on its price."""
+    found = checked.found
+    m = found.model.m
+    price = number(float(prices(found.written)[line]))
+    kind = "dual value" if line < m else "reduced cost"
+    if condition is Condition.STATIONARITY:
+        given = found.plan.z.values[line - m] if found.plan.z else 0.0
+        return f"{number(float(given))} in the file, {price} by its dual values"
+    if condition is Condition.DUAL:
+        return f"{kind} {price}"
+    distance = float(distances(found.written)[line])
+    where = "beyond" if distance < 0 else "from"
+    return f"{kind} {price}, {number(abs(distance))} {where} its side"
 
 
 def _columns(checked: CheckedPlan) -> str:
@@ -119,18 +112,21 @@ def _rounding(checked: CheckedPlan) -> str:
     plan, m = checked.found.plan, checked.found.model.m
     coarse = []
     for part, noun, first in (
-        (plan.x, "values", m),
-        (plan.y, "dual values", 0),
-        (plan.z, "reduced costs", m),
+        (plan.x, "", m),
+        (plan.y, "dual values ", 0),
+        (plan.z, "reduced costs ", m),
     ):
         if part is None or not part.half.any():
             continue
         k = int(np.argmax(part.half))
         name = line_name(checked.found.model, first + k)
-        coarse.append(f"{noun} to within {number(float(part.half[k]))} ({name})")
+        coarse.append(f"{noun}{number(float(part.half[k]))} ({name})")
     if not coarse:
         return "none: every number is taken as exact"
-    return f"at the coarsest {', '.join(coarse)}; each line is judged by itself"
+    return (
+        f"values are known to half their last digit, at worst {', '.join(coarse)}; each line is "
+        "judged alone, so that no one plan need satisfy all"
+    )
 
 
 def _limits(checked: CheckedPlan) -> Pairs:
@@ -145,8 +141,8 @@ def _limits(checked: CheckedPlan) -> Pairs:
         return (("limits", f"{have}; none is violated"),)
     unit = units_of(checked.outcome.head, row).own
     name = line_name(checked.found.model, row)
-    told = f"the worst is {name}, violated by {amount(violation, unit)} of {amount(limit, unit)}"
-    return (("limits", f"{have}; {told} allowed"),)
+    told = f"violated by {amount(violation, unit)}; {amount(limit, unit)} is allowed"
+    return (("limits", f"{have}, worst {name}, {told}"),)
 
 
 def _objective(checked: CheckedPlan) -> str:
@@ -183,35 +179,28 @@ def _optimum(checked: CheckedPlan) -> str:
 
 
 def _distance(checked: CheckedPlan, against: Against) -> str:
-    unit = objective_unit(checked.outcome.head)
-    away = amount(abs(against.distance), unit)
-    relative = ""
-    if against.relative is not None and against.distance:
-        relative = f" ({residual(abs(against.relative))} relative)"
-    if against.distance < 0:
-        text = f"the plan is {away} better{relative}"
-    else:
-        text = (
-            f"the plan is {away} from it{relative}" if against.distance else "the plan attains it"
-        )
+    if against.multipliers is Multipliers.THOSE_FOUND:
+        to = f" to within {residual(abs(against.distance))}" if against.distance else ""
+        return f"the plan attains it{to}"
+    text = f"the plan is {away(checked, against)}" if against.distance else "the plan attains it"
     if checked.judgement.feasible:
         return text
     return f"{text}, which means nothing for a plan that is not feasible"
 
 
 _MULTIPLIERS = {
-    Multipliers.THOSE_FOUND: "those of the optimum make this plan optimal",
-    Multipliers.NONE: "none make this plan optimal (weak duality)",
+    Multipliers.THOSE_FOUND: "the dual values of the optimum make this plan optimal",
+    Multipliers.NONE: "no dual values make this plan optimal",
     Multipliers.ON_THE_EDGE: "not settled at this tolerance: beside the prices of the optimum the "
     "gap is within it, a product is not",
-    Multipliers.NOT_FEASIBLE: "none make a plan optimal that is not feasible",
+    Multipliers.NOT_FEASIBLE: Multipliers.NOT_FEASIBLE.value,
 }
 
 
 def _multipliers(checked: CheckedPlan) -> Pairs:
     """Whether any dual values make the plan optimal, as written and within its rounding."""
     against = checked.against
-    if against is None:
+    if against is None or not_shown(checked):
         return ()
     text = _MULTIPLIERS[against.multipliers]
     if against.multipliers is not Multipliers.THOSE_FOUND:
@@ -220,4 +209,4 @@ def _multipliers(checked: CheckedPlan) -> Pairs:
             if against.could_be
             else "; no plan within its rounding is optimal"
         )
-    return (("dual values", text),)
+    return (("multipliers", text),)

@@ -118,7 +118,7 @@ def test_columns_that_are_not_listed_are_0(reading: Reading) -> None:
     assert found.model.upper.tolist() == [0, 2, np.inf]
     assert (
         found.notes.remarks[-1]
-        == "1 integer column not listed in plan.csv, fixed at 0: first 'big'"
+        == "1 of 2 integer columns is not in plan.csv and was fixed at 0, the first 'big'"
     )
 
 

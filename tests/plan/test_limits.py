@@ -130,7 +130,7 @@ def test_violated_lines_come_worst_first_and_the_worst_limit_is_told():
     found = measured(lp, given(("5", "7")))
     judgement = verdicts(lp, ("5", "7"), limits=asked)
     lines = violated(found, judgement)
-    assert [(one.line, one.violation, one.allowed) for one in lines] == [
+    assert [(one.line, one.size, one.allowed) for one in lines] == [
         (0, 1, 0.25), (2, 11, 3),
     ]  # fmt: skip
     assert worst_limit(found, judgement.limits) == (0, 1, 0.25)

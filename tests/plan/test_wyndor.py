@@ -24,7 +24,7 @@ def test_the_published_plan_is_feasible_and_optimal():
     assert found.passed and found.judgement.feasible
     assert (against.optimum, against.distance, against.relative) == (36, 0, 0)
     assert against.multipliers is Multipliers.THOSE_FOUND
-    assert against.left == () and against.gap == 0
+    assert against.lines == () and against.gap == 0
 
 
 def test_only_feasibility_is_judged_without_prices():
@@ -38,7 +38,7 @@ def test_only_feasibility_is_judged_without_prices():
     }
 
 
-def test_another_vertex_leaves_nine_on_the_table():
+def test_another_vertex_costs_nine():
     """By the prices (0, 3/2, 1): plant 2 has 12 - 6 left at 3/2 each, the others nothing."""
     found = checked(wyndor(), ("4", "3"))
     against = found.against
@@ -46,7 +46,7 @@ def test_another_vertex_leaves_nine_on_the_table():
     assert (found.found.objective.value, against.optimum) == (27, 36)
     assert (against.distance, against.relative) == (9, 0.25)
     assert against.multipliers is Multipliers.NONE
-    [left] = against.left
+    [left] = against.lines
     assert (left.line, left.price, left.distance, left.product) == (1, 1.5, 6, 9)
     assert against.gap == 9
 
@@ -55,7 +55,7 @@ def test_a_plan_that_breaks_a_row_is_better_than_the_optimum_and_fails():
     found = checked(wyndor(), ("4", "6"))
     [line] = violated(found.found, found.judgement)
     assert not found.passed and not found.judgement.feasible_within
-    assert (line.line, line.violation, line.within) == (2, 6, False)
+    assert (line.line, line.size, line.within) == (2, 6, False)
     assert line.allowed == pytest.approx(18e-9)
     assert (found.found.objective.value, found.against.distance) == (42, -6)
     assert found.against.multipliers is Multipliers.NOT_FEASIBLE
@@ -91,7 +91,7 @@ def test_the_same_plan_in_both_senses(sense):
     found = checked(lp, ("4", "3"))
     assert found.against.distance == 9
     assert found.against.optimum == 36 * turned
-    assert [one.price * turned for one in found.against.left] == [1.5]
+    assert [one.price * turned for one in found.against.lines] == [1.5]
     y = [str(turned * price) for price in (0, 1.5, 1)]
     assert set(passed(lp, ("2", "6"), y).values()) == {(True, True), None}
 
@@ -107,6 +107,7 @@ def test_rounding_decides_between_written_and_within():
 
 def test_rounded_is_enough_where_asked_for():
     plan = ("2.03", "6.0")
-    assert not checked(wyndor(), plan).passed
-    assert checked(wyndor(), plan, rounded=True).passed
-    assert not checked(wyndor(), ("4", "6"), rounded=True).passed
+    assert not checked(wyndor(), plan).accepted
+    rounded = checked(wyndor(), plan, rounded=True)
+    assert rounded.accepted and not rounded.passed
+    assert not checked(wyndor(), ("4", "6"), rounded=True).accepted
