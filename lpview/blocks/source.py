@@ -78,7 +78,7 @@ class Source:
 def read_path(path: str | Path, decimal: str | None = None) -> list[Source]:
     """The files of a model: one, or those of a folder. Raises `InputError`."""
     if not Path(path).is_dir():
-        return [read_file(str(path), decimal=decimal)]
+        return [read_file(str(path), decimal=decimal, what="a file or folder")]
     sources: list[Source] = []
     mistakes: list[Mistake] = []
     for name, block in FOLDER_FILES.items():
@@ -112,13 +112,15 @@ def _misnamed(path: str | Path) -> list[Mistake]:
     ]
 
 
-def read_file(file: str, block: str = "", decimal: str | None = None) -> Source:
-    """The text of one file. Raises `InputError`."""
+def read_file(
+    file: str, block: str = "", decimal: str | None = None, what: str = "a file"
+) -> Source:
+    """The text of one file; ``what`` it may be, in words. Raises `InputError`."""
     try:
         data = Path(file).read_bytes()
     except FileNotFoundError:
-        what = f"a file with the block [{block}]" if block else "a file or folder"
-        raise InputError([Mistake(file, what, "nothing of that name")]) from None
+        wanted = f"a file with the block [{block}]" if block else what
+        raise InputError([Mistake(file, wanted, "nothing of that name")]) from None
     except OSError as error:
         reason = error.strerror or type(error).__name__
         raise InputError([Mistake(file, "a readable file", f"'{reason}'")]) from None

@@ -149,4 +149,4 @@ def test_a_mistake_draws_the_whole_message(lp: LinearProgram, text: str) -> None
 def test_a_plan_that_is_not_there(lp: LinearProgram) -> None:
     with pytest.raises(InputError) as caught:
         read_plan("nowhere.csv", lp)
-    assert str(caught.value) == "nowhere.csv: expected a file or folder, got nothing of that name"
+    assert str(caught.value) == "nowhere.csv: expected a file, got nothing of that name"

@@ -7,11 +7,13 @@ The units of the nutrients are from memory.
 
 from __future__ import annotations
 
+from decimal import ROUND_DOWN
 from pathlib import Path
 
 import pytest
 
 from lpview import cli
+from lpview.report.worth import written_out
 
 DATA = Path(__file__).resolve().parents[1] / "data"
 GIVEN = [str(DATA / "textbook" / "a14.csv"), "--labels", str(DATA / "labels" / "a14.csv")]
@@ -55,17 +57,18 @@ def test_prices_are_in_dollars_per_unit_of_the_nutrient(capsys: pytest.CaptureFi
 
 
 def test_the_page(capsys: pytest.CaptureFixture[str]) -> None:
-    lines = run("--summary", capsys=capsys).splitlines()
-    assert lines[0].endswith("a14.csv: a best plan was found and verified")
+    # A sentence goes on in the next line after two blanks.
+    lines = run("--summary", capsys=capsys).replace("\n  ", " ").splitlines()
+    assert lines[0].endswith("a14.csv: the best plan was found and verified")
     assert lines[1] == "The best plan found costs 0.108662 dollar (cost of a day's food)."
     shown = [line for line in lines if line.startswith("Limit ")]
     assert len(shown) == len(LIMITS)
     for line, (name, (price, side, low, high, unit)) in zip(shown, LIMITS.items(), strict=True):
-        less, more = f"{side - low:.6g}", f"{high - side:.6g}"
-        assert line.startswith(f"Limit {name}, at least {side:g} {unit}: each {unit} less required")
-        # The published ends have nine or ten digits, of which six are shown.
-        assert f"saves {price} dollar, for up to {less} {unit} less;" in line
-        assert f"costs {price} dollar, for up to {more} {unit} more" in line
+        # The published ends have nine or ten digits, of which four are shown, cut.
+        less, more = (written_out(far, 4, ROUND_DOWN) for far in (side - low, high - side))
+        worth = f"each {unit} required is worth {float(price):.4g} dollar"
+        assert line.startswith(f"Limit {name}, at least {side:g} {unit}: {worth}: ")
+        assert f": less saves it (for {less} {unit}), more costs it (for {more} {unit}" in line
     assert "No other plan is as good." in lines
 
 
