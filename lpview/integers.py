@@ -16,7 +16,7 @@ from lpview.blocks.mistakes import InputError, Mistake, printable, quoted
 from lpview.decimals import exact_value, number_text
 from lpview.given import GivenPlan
 from lpview.model import LinearProgram, frozen_odd
-from lpview.reading import Reading
+from lpview.reading import InPlace, Reading, Scope
 
 ADVICE = (
     "--relax checks its linear relaxation, "
@@ -44,7 +44,7 @@ def relaxed(reading: Reading) -> Reading:
     """The linear relaxation: integer columns may take any value within their bounds."""
     if not reading.integers:
         return _remarked(reading, "no integer columns to relax")
-    scope = f"linear relaxation: {_columns(reading.integers)} taken as continuous"
+    scope = Scope(InPlace.RELAXED, len(reading.integers))
     return replace(reading, integers=(), notes=replace(reading.notes, scope=scope))
 
 
@@ -78,10 +78,7 @@ def fixed(reading: Reading, plan: GivenPlan, source: str) -> Reading:
             f"{printable(plan.file)} and {was} fixed at 0, the first {first}"
         )
         reading = _remarked(reading, remark)
-    scope = (
-        f"{_columns(reading.integers)} fixed at the values of {printable(plan.file)}; "
-        "prices hold only for these integer values"
-    )
+    scope = Scope(InPlace.FIXED, len(reading.integers), printable(plan.file))
     model = _fixed_model(reading.model, values)
     return replace(reading, model=model, integers=(), notes=replace(reading.notes, scope=scope))
 

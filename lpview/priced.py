@@ -103,6 +103,49 @@ def price_report(found: Optimal, prices: Prices, most: int | None, between: Betw
     return asking.priced(found, ask)
 
 
+Choose = Callable[[Optimal], Sequence[int]]
+"""The lines to examine, by an answer whose marks tell which prices are not unique."""
+
+
+def price_page(found: Optimal, prices: Prices, choose: Choose, between: Between) -> Priced:
+    """Examine what a page of sentences tells: some lines, and all price intervals.
+
+    An endless interval belongs to a move that leaves no plan at once (`without_plan`). The
+    lines come first, for they are few and matter most; intervals may leave fewer prices that
+    are not unique, and with it other lines to choose.
+    """
+    asking = _Asking(prices, between, 0)
+
+    def ask_chosen() -> None:
+        chosen = choose(asking.marked(found))
+        asking.asked = len({*chosen, *asking.lines})
+        asking.ask([line for line in chosen if line not in asking.lines])
+
+    def ask() -> None:
+        ask_chosen()
+        asking.ask_intervals()
+        ask_chosen()
+
+    return asking.priced(found, ask)
+
+
+def without_plan(priced: Priced) -> list[tuple[int, bool]]:
+    """Moves that leave no plan however small they are, as far as intervals are known.
+
+    Each is a line and whether it is moved up, in model order. What moves is the lower side or
+    bound up and the upper one down; both together where they meet.
+    """
+    up_is_greatest = priced.found.head.model.sense.sign > 0
+    moves = []
+    for line, (least, greatest) in sorted(priced.intervals.items()):
+        endless = (np.isinf(greatest), np.isinf(least))
+        ways = endless if up_is_greatest else endless[::-1]
+        moves += [
+            (line, up) for up, is_endless in zip((True, False), ways, strict=True) if is_endless
+        ]
+    return moves
+
+
 def widest(intervals: Mapping[int, Interval], m: int) -> list[int]:
     """Rows by falling width of their price interval, equal ones in model order."""
     width = {k: ends[1] - ends[0] for k, ends in intervals.items() if k < m}
@@ -139,6 +182,15 @@ class _Asking:
             self.between()
             self.lines[line] = self.prices.line(line)
 
+    def marked(self, found: Optimal) -> Optimal:
+        """The answer, marked by what is known so far."""
+        not_unique = self.prices.partition.price_moves.copy()
+        for line, (least, greatest) in self.intervals.items():
+            not_unique[line] = least < greatest
+        for line, examined in self.lines.items():
+            not_unique[line] = not examined.is_unique
+        return replace(found, marks=with_prices(found.marks, not_unique))
+
     def priced(self, found: Optimal, ask: Callable[[], None]) -> Priced:
         """Ask, and keep what is known at the end or when stopped."""
         stopped = None
@@ -147,13 +199,8 @@ class _Asking:
         except StoppedEarlyError as error:
             stopped = error.claim
         partition = self.prices.partition
-        not_unique = partition.price_moves.copy()
-        for line, (least, greatest) in self.intervals.items():
-            not_unique[line] = least < greatest
-        for line, examined in self.lines.items():
-            not_unique[line] = not examined.is_unique
         return Priced(
-            found=replace(found, marks=with_prices(found.marks, not_unique)),
+            found=self.marked(found),
             lines=self.lines,
             asked=self.asked,
             intervals=self.intervals,

@@ -2,11 +2,44 @@
 
 from __future__ import annotations
 
+import enum
 from collections.abc import Mapping
 from dataclasses import dataclass
 
 from lpview.labels import NO_LABELS, Labels
 from lpview.model import LinearProgram
+
+
+class InPlace(enum.Enum):
+    """What can stand in place of integer columns."""
+
+    RELAXED = "relaxed"
+    """The linear relaxation: any value within their bounds."""
+    FIXED = "fixed"
+    """The whole numbers of a plan."""
+
+
+@dataclass(frozen=True)
+class Scope:
+    """What stands in place of a model's integer columns."""
+
+    kind: InPlace
+    """Whether they are relaxed or fixed."""
+    columns: int
+    """How many they are."""
+    file: str = ""
+    """The plan with the whole numbers, safe to print; empty for the relaxation."""
+
+    @property
+    def words(self) -> str:
+        """The same in words, for the first line of a report."""
+        columns = f"{self.columns} integer column" + ("" if self.columns == 1 else "s")
+        if self.kind is InPlace.RELAXED:
+            return f"linear relaxation: {columns} taken as continuous"
+        return (
+            f"{columns} fixed at the values of {self.file}; prices hold only for these integer "
+            "values"
+        )
 
 
 @dataclass(frozen=True)
@@ -27,9 +60,14 @@ class Notes:
     remarks: tuple[str, ...] = ()
     """Anything else that reading noticed or was told to do, each in words that go on
     after "noticed while reading:"."""
-    scope: str = ""
-    """What stands in place of the model's integer columns, in words for the first line of
-    a report: its linear relaxation, or fixed values; empty for a linear program as it is."""
+    scope: Scope | None = None
+    """What stands in place of the model's integer columns; None for a linear program as it
+    is."""
+
+    @property
+    def scope_words(self) -> str:
+        """The scope in words; empty where there is none."""
+        return self.scope.words if self.scope else ""
 
 
 @dataclass(frozen=True)

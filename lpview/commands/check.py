@@ -96,7 +96,9 @@ def _rendered(checked: list[Checked], options: argparse.Namespace) -> str:
         added = [_added(one, options) for one in checked]
         found = [_with_exact_zeros(one) for one in checked]
         return json.render(found if len(options.models) > 1 else found[0], added)
-    return "\n".join(rendered(_document(one, options), options.format) for one in checked)
+    return "\n".join(
+        rendered(_document(one, options), options.format, options.summary) for one in checked
+    )
 
 
 def _added(one: Checked, options: argparse.Namespace) -> dict[str, object]:

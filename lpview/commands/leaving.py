@@ -22,16 +22,18 @@ def status(found: Examination) -> int:
 def tell_notes(source: str, notes: Notes) -> None:
     """What a report would say of the reading, on standard error, where data are written."""
     if notes.scope:
-        sys.stderr.write(f"{source}: {notes.scope}\n")
+        sys.stderr.write(f"{source}: {notes.scope_words}\n")
     if notes.remarks:
         sys.stderr.write(f"{source}: noticed while reading: {', '.join(notes.remarks)}\n")
 
 
-def rendered(document: Document, form: str) -> str:
-    """A document as text or Markdown."""
+def rendered(document: Document, form: str, is_page: bool = False) -> str:
+    """A document as text or Markdown; ``is_page`` breaks its sentences into lines of text."""
     from lpview.report import markdown, text
 
-    return (markdown.render if form == "markdown" else text.render)(document)
+    if form == "markdown":
+        return markdown.render(document)
+    return text.render(document, text.PAGE if is_page else None)
 
 
 def write(text: str, output: str | None) -> None:

@@ -20,6 +20,7 @@ from lpview.priced import (
     Priced,
     price_everything,
     price_lines,
+    price_page,
     price_report,
 )
 from lpview.prices import NoPrices, Prices, Then, Together, move_together, work_out
@@ -109,7 +110,7 @@ def _asked(
         lines = arriving.lines_asked(found.head.model, "", options.lines)
         return price_lines(found, ready, lines, step)
     if options.summary:
-        return price_lines(found, ready, summary_lines(found), step)
+        return price_page(found, ready, summary_lines, step)
     if options.format in ("json", "csv"):
         return price_everything(found, ready, step)
     priced = price_report(found, ready, None if options.full else reports.MOST_ROWS, step)

@@ -13,7 +13,7 @@ def title(head: Head, source: str = "") -> str:
 
     ``source``, if any, stands in place of its name.
     """
-    scope = head.notes.scope
+    scope = head.notes.scope_words
     return safe(source or head.request.source) + (f" ({safe(scope)})" if scope else "")
 
 

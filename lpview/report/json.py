@@ -101,7 +101,7 @@ def _model(head: Head) -> dict[str, Any]:
 
 def scope_and_labels(head: Head) -> dict[str, str]:
     """What stands in place of the model, and the labels that came with it, if any."""
-    fields = {"scope": head.notes.scope, "labels_sha256": head.labels.sha256}
+    fields = {"scope": head.notes.scope_words, "labels_sha256": head.labels.sha256}
     return {name: text for name, text in fields.items() if text}
 
 

@@ -3,84 +3,116 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
+from dataclasses import dataclass
 
 import numpy as np
 
 from lpview.ledger import ledger
-from lpview.model import LinearProgram
-from lpview.outcomes import Head, Optimal
+from lpview.marks import Flag, Mask
+from lpview.model import Vector
+from lpview.outcomes import Optimal
 from lpview.priced import Priced
 from lpview.prices import NoPrices
-from lpview.report.names import fitted, safe
-from lpview.report.numbers import count
-from lpview.report.prices import active
-from lpview.report.units import label_of, units_of
-from lpview.report.worth import (
-    bounds_words,
-    end_of,
-    is_rate_same,
-    limit_of,
-    moves_words,
-    written_amount,
-)
+from lpview.report.names import safe
+from lpview.report.numbers import count, number
+from lpview.report.summary_moves import without_plan_words
+from lpview.report.summary_names import limit_name, named, nobody_set, with_label
+from lpview.report.summary_worth import bounds_words, moves_words
+from lpview.report.units import units_of
+from lpview.report.worth import SURE_DIGITS, end_of, is_rate_same, limit_of, written_amount
 
 MOST_LIMITS = 7
 """Limits shown."""
-MOST_NAMED = 7
-"""Lines named in a sentence."""
 
 Prices = Priced | NoPrices | None
 """What is known of the prices; None where they were not asked for."""
 
 
-def summary_lines(found: Optimal) -> list[int]:
-    """The limits that the page shows, whose prices it needs; numbered as in `lpview.kkt`."""
-    return _reached(found)[:MOST_LIMITS]
+@dataclass(frozen=True)
+class Reached:
+    """The limits at which the plan is; numbered as in `lpview.kkt`.
 
-
-def _reached(found: Optimal) -> list[int]:
-    """Limits without room, by falling |price times limit|, equal ones in model order.
-
-    An amount of 0 that rests at its lower bound is no limit that anybody set.
+    Both lists are by falling |price times limit|, then falling |price|, then in model order.
     """
-    lp, measured = found.head.model, found.measurement
-    resting = (lp.lower == 0.0) & ~lp.is_fixed & (measured.columns.below <= measured.columns.above)
-    counts = ~np.concatenate([np.zeros(lp.m, dtype=bool), resting])
-    counts &= np.isfinite(np.concatenate([measured.rows.slack, measured.columns.slack]))
-    worth = np.abs(
-        np.concatenate(
-            [
-                measured.rows.price * measured.rows.end,
-                measured.columns.price * measured.columns.end,
-            ]
-        )
-    )
-    lines = np.flatnonzero(counts & ~found.marks.room)
-    ordered: list[int] = lines[np.argsort(-worth[lines], kind="stable")].tolist()
-    return ordered
+
+    holding: tuple[int, ...]
+    """Those that have a price, in this answer or in another optimal dual solution."""
+    perhaps: tuple[int, ...]
+    """Those without a price in this answer, where others are not known."""
+    idle: int
+    """How many have no price in any optimal dual solution, as far as that is known."""
+
+    @property
+    def shown(self) -> tuple[int, ...]:
+        """Those on the page."""
+        return (*self.holding, *self.perhaps)[:MOST_LIMITS]
+
+
+def summary_lines(found: Optimal) -> tuple[int, ...]:
+    """The limits that the page shows, whose prices it needs; numbered as in `lpview.kkt`.
+
+    Which limits can have a price is taken from the marks of `lpview.marks.NEED_PRICES`,
+    where the answer has them.
+    """
+    return reached(found).shown
+
+
+def reached(found: Optimal) -> Reached:
+    """The limits at which the plan is, and which of them hold it back."""
+    lp, rows, columns = found.head.model, found.measurement.rows, found.measurement.columns
+    below = np.concatenate([rows.below, columns.below])
+    above = np.concatenate([rows.above, columns.above])
+    counts = ~found.marks.room & np.isfinite(np.minimum(below, above))
+    counts &= ~(nobody_set(lp) & (below <= above))
+    priced, not_unique = found.marks.priced, found.marks.flags.get(Flag.NOT_UNIQUE)
+    size = np.where(priced, np.abs(np.concatenate([rows.price, columns.price])), 0.0)
+    worth = size * np.abs(np.concatenate([rows.end, columns.end]))
+
+    def ordered(mask: Mask) -> tuple[int, ...]:
+        lines = np.flatnonzero(counts & mask)
+        order = np.lexsort((-_sure(size[lines]), -_sure(worth[lines])))
+        return tuple(lines[order].tolist())
+
+    if not_unique is None:
+        return Reached(ordered(priced), ordered(~priced), 0)
+    can_have = priced | not_unique
+    return Reached(ordered(can_have), (), int(np.count_nonzero(counts & ~can_have)))
+
+
+def _sure(sizes: Vector) -> Vector:
+    """Sizes without the digits that may be rounding, which must not rank equal ones."""
+    return np.array([float(number(size, SURE_DIGITS)) for size in sizes.tolist()])
 
 
 def limits(found: Optimal, prices: Prices) -> list[str]:
     """The limits that hold the plan back, and what is not known of them."""
-    every = _reached(found)
-    known = prices.lines if isinstance(prices, Priced) else {}
-    shown = []
-    for line in every[:MOST_LIMITS]:
-        moves = active(found, line, known[line]) if line in known else None
-        if moves is None or moves.up.rate or moves.down.rate:
-            shown.append(line)
-    further = every[MOST_LIMITS:]
-    if not shown and not further:
-        return ["No limit holds it back.", *_about_prices(found, prices, [])]
-    words = "This limit holds" if len(shown) == 1 else f"These {len(shown)} limits hold"
-    return [
-        f"{words} it back, the one that matters most first:"
-        if len(shown) > 1
-        else f"{words} it back:",
-        *(_limit(found, line, prices) for line in shown),
-        *_further(found, further),
-        *_about_prices(found, prices, shown),
-    ]
+    at = reached(prices.found if isinstance(prices, Priced) else found)
+    body = [_heading(at), *(_limit(found, line, prices) for line in at.shown)]
+    if at.idle:
+        body.append(
+            f"The plan also reaches {count(at.idle, 'limit')} that could move a little without "
+            "changing the result."
+        )
+    if isinstance(prices, Priced):
+        body += without_plan_words(prices, at.shown)
+    return [*body, *_about_prices(found, prices, at.shown)]
+
+
+def _heading(at: Reached) -> str:
+    holding, perhaps, shown = len(at.holding), len(at.perhaps), len(at.shown)
+    if not shown:
+        return "No limit holds it back."
+    if shown == 1:
+        return f"This limit {'holds' if holding else 'may hold'} it back:"
+    if shown == holding + perhaps:
+        hold = "hold it back or may" if perhaps else "hold it back"
+        order = f"{hold}, the largest price times limit first" if holding else "may hold it back"
+        return f"These {shown} limits {order}:"
+    if not holding:
+        return f"{perhaps} limits may hold it back, such as these {shown}:"
+    verb, more = "holds" if holding == 1 else "hold", f" and {perhaps} more may" * bool(perhaps)
+    first = f"these {shown} come first by price times limit"
+    return f"{count(holding, 'limit')} {verb} it back{more}; {first}:"
 
 
 def _limit(found: Optimal, line: int, prices: Prices) -> str:
@@ -92,16 +124,6 @@ def _limit(found: Optimal, line: int, prices: Prices) -> str:
     else:
         words = bounds_words(found, line)
     return f"{what}, {limit.value} {end}: {words}."
-
-
-def _further(found: Optimal, lines: Sequence[int]) -> list[str]:
-    priced = int(np.count_nonzero(found.marks.priced[list(lines)])) if lines else 0
-    parts = []
-    if priced:
-        parts.append(f"{count(priced, 'further limit')} with a price")
-    if len(lines) > priced:
-        parts.append(f"{count(len(lines) - priced, 'further limit')} without one in this answer")
-    return [f"The plan also reaches {' and '.join(parts)}."] if parts else []
 
 
 def _about_prices(found: Optimal, prices: Prices, shown: Sequence[int]) -> list[str]:
@@ -133,23 +155,5 @@ def _others(prices: Priced) -> list[str]:
         return ["No other plan is as good."]
     m = prices.found.head.model.m
     moves = int(np.count_nonzero(prices.value_moves[m:]))
-    return [f"Other plans are just as good; {count(moves, 'amount')} may differ in them."]
-
-
-def named(names: Sequence[str]) -> str:
-    """The first names of a list, and how many more there are."""
-    more = f" and {len(names) - MOST_NAMED} more" if len(names) > MOST_NAMED else ""
-    return ", ".join(names[:MOST_NAMED]) + more
-
-
-def limit_name(lp: LinearProgram, line: int) -> str:
-    """``heat``, or ``the amount of tomato`` for a column."""
-    if line < lp.m:
-        return fitted(lp.rows[line])
-    return f"the amount of {fitted(lp.columns[line - lp.m])}"
-
-
-def with_label(head: Head, line: int) -> str:
-    """The same with the label of the line, if it has one."""
-    label = fitted(label_of(head, line).label)
-    return limit_name(head.model, line) + (f" ({label})" if label else "")
+    listed = f"{count(moves, 'amount')} may differ in them (lpview plans lists them)"
+    return [f"Other plans are just as good; {listed}."]

@@ -6,15 +6,21 @@ from lpview.report.document import Block, Command, Document, Facts, Sentence, Ta
 from lpview.report.names import width
 
 GAP = "  "
+PAGE = 100
+"""Cells of a line on a page of sentences."""
 
 
-def render(document: Document) -> str:
-    """The document as lines of text, a blank line before each table and group."""
+def render(document: Document, wide: int | None = None) -> str:
+    """The document as lines of text, a blank line before each table and group.
+
+    ``wide`` is how many cells a sentence may take before it goes on in the next line, None
+    for any number.
+    """
     lines: list[str] = []
     for before, block in zip((None, *document), document, strict=False):
         if before is not None and not _close(before, block):
             lines.append("")
-        lines += _lines(block)
+        lines += _lines(block, wide)
     return "\n".join(lines) + "\n"
 
 
@@ -24,15 +30,28 @@ def _close(before: Block, block: Block) -> bool:
     return isinstance(block, Command) or (isinstance(before, prose) and isinstance(block, prose))
 
 
-def _lines(block: Block) -> list[str]:
+def _lines(block: Block, wide: int | None) -> list[str]:
     if isinstance(block, Sentence):
-        return [block.text]
+        return [block.text] if wide is None else _wrapped(block.text, wide)
     if isinstance(block, Command):
         return [block.label + GAP + block.text]
     if isinstance(block, Facts):
         wide = max((width(label) for label, _ in block.pairs), default=0)
         return [_padded(label, wide) + GAP + text for label, text in block.pairs]
     return _table(block)
+
+
+def _wrapped(text: str, wide: int) -> list[str]:
+    """A text in lines, broken at blanks only; a word that is wider than a line stays whole."""
+    first, *words = text.split(" ")
+    lines = [first]
+    for word in words:
+        longer = f"{lines[-1]} {word}"
+        if width(longer) <= wide:
+            lines[-1] = longer
+        else:
+            lines.append(GAP + word)
+    return lines
 
 
 def _table(table: Table) -> list[str]:

@@ -8,11 +8,12 @@ from __future__ import annotations
 
 import enum
 import math
-from decimal import Decimal
+from decimal import ROUND_HALF_EVEN, Context, Decimal
 
 import numpy as np
 
-from lpview.ledger import Ledger, ledger
+from lpview.decimals import PRINTED_DIGITS
+from lpview.ledger import Ledger
 from lpview.model import LinearProgram
 from lpview.outcomes import Optimal
 from lpview.prices import LinePrices, Move, Then
@@ -22,6 +23,8 @@ from lpview.report.units import Units, in_units, units_of
 
 WRITTEN_OUT = 1e-9, 1e15
 """Sizes between which numbers are written without an exponent."""
+SURE_DIGITS = 9
+"""Significant digits beyond which a number that is cut is taken for rounding."""
 
 
 class Limit(enum.Enum):
@@ -42,17 +45,33 @@ def limit_of(found: Optimal, line: int) -> Limit:
     return Limit.LOWER if is_lower(found, line) else Limit.UPPER
 
 
-def written_out(value: float) -> str:
-    """A number of at least six digits, without an exponent as far as that can be read."""
+def written_out(value: float, digits: int = PRINTED_DIGITS, rounding: str = ROUND_HALF_EVEN) -> str:
+    """A number without an exponent as far as that can be read, and with all digits before its
+    decimal mark.
+
+    Parameters
+    ----------
+    digits
+        Significant digits, at least.
+    rounding
+        How the others are left off, a name of `decimal`. Whatever is not rounded to the
+        nearest is so first, at `SURE_DIGITS`, so that 0.4999999999 is not cut to 0.4999.
+    """
     size = abs(value)
-    if not WRITTEN_OUT[0] <= size < WRITTEN_OUT[1]:
+    if size == 0 or math.isinf(value) or math.isnan(value):
         return number(value)
-    digits = max(6, math.floor(math.log10(size)) + 1)
-    return format(Decimal(number(value, digits)), "f")
+    readable = WRITTEN_OUT[0] <= size < WRITTEN_OUT[1]
+    if readable:
+        digits = max(digits, math.floor(math.log10(size)) + 1)
+    known = Decimal(float(value))
+    if rounding != ROUND_HALF_EVEN:
+        known = Context(prec=max(SURE_DIGITS, digits + 2)).plus(known)
+    rounded = Context(prec=digits, rounding=rounding).plus(known)
+    return format(rounded.normalize(), "f") if readable else number(float(rounded))
 
 
 def written_amount(value: float, unit: str) -> str:
-    """The same with its unit."""
+    """The same with its unit, at the digits that everything is printed with."""
     return in_units(written_out(value), unit)
 
 
@@ -69,7 +88,8 @@ def gain(change: float, sign: float, unit: str) -> str:
 
 def many(amount: float, units: Units) -> str:
     """``40 kWh``, ``1 unit``, ``2 units``."""
-    return f"{written_out(amount)} {units.own or ('unit' if amount == 1 else 'units')}"
+    text = written_out(amount)
+    return f"{text} {units.own or ('unit' if text == '1' else 'units')}"
 
 
 def step_sentence(found: Optimal, line: int, prices: LinePrices) -> str:
@@ -105,26 +125,6 @@ def _step(move: Move, up: bool, lp: LinearProgram, units: Units, where: str = ""
     return f"each {units.one} {way}{where} {worth}, {_far(move, way, units)}"
 
 
-def moves_words(found: Optimal, line: int, prices: LinePrices) -> str:
-    """What moving a line's limit is worth, looser first, both ways and how far."""
-    moves, limit = active(found, line, prices), limit_of(found, line)
-    assert moves is not None
-    lp, units = found.head.model, units_of(found.head, line)
-    ways = [(moves.up, True), (moves.down, False)]
-    if limit is Limit.LOWER:
-        ways.reverse()
-    return "; ".join(_clause(move, up, lp, units, limit) for move, up in ways)
-
-
-def _clause(move: Move, up: bool, lp: LinearProgram, units: Units, limit: Limit) -> str:
-    way = "more" if up else "less"
-    named = way if limit is Limit.UPPER else f"{way} required"
-    if math.isinf(move.rate):
-        return f"any {named} {_at_once(move)}"
-    worth = gain(move.rate if up else -move.rate, lp.sense.sign, units.objective)
-    return f"each {units.one} {named} {worth}, {_far(move, way, units)}"
-
-
 def _at_once(move: Move) -> str:
     if move.then is Then.UNBOUNDED:
         return "lets the objective improve without limit"
@@ -143,42 +143,6 @@ def _far(move: Move, way: str, units: Units) -> str:
         Then.UNBOUNDED: ", and beyond that the objective improves without limit",
     }
     return f"for up to {far} {way}{ends.get(move.then, '')}"
-
-
-def bounds_words(found: Optimal, line: int) -> str:
-    """What the price in the answer says of moving a line's limit, whichever price it is.
-
-    It is the slope of a line that the optimal objective never crosses
-    (`lpview.report.ledger_words`), so it bounds what every whole step is worth.
-    """
-    entry, limit, units = ledger(found, line), limit_of(found, line), units_of(found.head, line)
-    required = "" if limit is Limit.UPPER else " required"
-    if not entry.priced:
-        return (
-            f"it has no price in this answer, but each {units.one} {_tighter(limit)}{required} may "
-            "still cost something, or leave no plan"
-        )
-    looser = "less" if entry.named_lower else "more"
-    tighter = "more" if entry.named_lower else "less"
-    sign, size = found.head.model.sense.sign, abs(entry.price)
-    best, worst = (
-        gain(-sign * size, sign, units.objective),
-        gain(sign * size, sign, units.objective),
-    )
-    return (
-        f"one {units.one} {looser}{required} {_at('at most', best, size, units)}; one {units.one} "
-        f"{tighter}{required} {_at('at least', worst, size, units)}, or leaves no plan"
-    )
-
-
-def _tighter(limit: Limit) -> str:
-    return {Limit.UPPER: "less", Limit.LOWER: "more", Limit.BOTH: "more or less"}[limit]
-
-
-def _at(words: str, worth: str, size: float, units: Units) -> str:
-    """``earns at most 2 EUR``."""
-    text = written_amount(size, units.objective)
-    return f"{worth.removesuffix(text)}{words} {text}"
 
 
 def end_of(entry: Ledger, limit: Limit) -> float:

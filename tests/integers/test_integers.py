@@ -89,12 +89,12 @@ def test_the_relaxation_of_a_published_model() -> None:
     """LP SOLN 1167185.73 in the file's own head."""
     found = relaxed(read_mps(FILES / "flugpl.mps"))
     assert found.integers == ()
-    assert found.notes.scope == "linear relaxation: 11 integer columns taken as continuous"
+    assert found.notes.scope_words == "linear relaxation: 11 integer columns taken as continuous"
     assert objective(found) == pytest.approx(1167185.73, abs=0.005)
 
 
 def test_one_integer_column(reading: Reading) -> None:
-    scope = relaxed(replace(reading, integers=(1,))).notes.scope
+    scope = relaxed(replace(reading, integers=(1,))).notes.scope_words
     assert scope == "linear relaxation: 1 integer column taken as continuous"
 
 
@@ -103,7 +103,7 @@ def test_values_of_a_plan_are_both_bounds(reading: Reading) -> None:
     lp = found.model
     assert (lp.lower.tolist(), lp.upper.tolist()) == ([2, 1, 0], [2, 1, np.inf])
     assert found.integers == ()
-    assert found.notes.scope == (
+    assert found.notes.scope_words == (
         "2 integer columns fixed at the values of plan.csv; prices hold only for these integer "
         "values"
     )

@@ -341,7 +341,7 @@ def test_notes_are_those_of_any_format() -> None:
     assert notes.rows_without_coefficients == ("q",)
     assert notes.names_alike == (("r", "R"),)
     assert dict(notes.most_decimals) == {"c": 2, "A": 1, "b": 3, "bounds": 4}
-    assert (notes.empty_coefficients, notes.empty_costs, notes.scope) == (0, 0, "")
+    assert (notes.empty_coefficients, notes.empty_costs, notes.scope) == (0, 0, None)
 
 
 @pytest.mark.parametrize(

@@ -10,6 +10,7 @@ from typing import Any
 import pytest
 
 from lpview.labels import Label, Labels
+from lpview.reading import InPlace, Scope
 from lpview.report.names import width
 from lpview.screen.app import LpviewApp, Work
 from lpview.screen.columns import Widths, layout, named, widths_of
@@ -199,7 +200,7 @@ def test_groups_are_families():
 
 def test_scope_and_remarks_are_said_when_the_screen_opens():
     scope = "linear relaxation: 2 integer columns taken as continuous"
-    found = labelled_mixture(scope=scope, remarks=("costs negated",))
+    found = labelled_mixture(scope=Scope(InPlace.RELAXED, 2), remarks=("costs negated",))
 
     async def script(pilot: Any, screen: Any) -> str:
         assert lines_of(screen.strip)[0].startswith(f"model.csv ({scope})  minimize  ")
