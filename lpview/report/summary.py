@@ -8,6 +8,7 @@ those that cannot be avoided; names and units stay as the person gave them.
 from __future__ import annotations
 
 import math
+from collections.abc import Mapping
 from dataclasses import replace
 
 from lpview.model import Sense
@@ -187,4 +188,23 @@ def _warnings(head: Head) -> list[str]:
         )
         words.append(f"{cells} taken as 0.")
     others = replace(head, notes=replace(notes, empty_coefficients=0, empty_costs=0))
-    return words + [f"{text[0].upper()}{text[1:]}." for text in noticed(others)]
+    words += [f"{text[0].upper()}{text[1:]}." for text in noticed(others)]
+    return words + _decimals(notes.most_decimals)
+
+
+_WHERE = {
+    "c": "costs",
+    "offset": "the constant",
+    "A": "coefficients",
+    "b": "limits of rows",
+    "bounds": "limits of amounts",
+}
+"""Blocks in the words of the page."""
+
+
+def _decimals(most: Mapping[str, int]) -> list[str]:
+    """How many decimals the file has: a spreadsheet exports what it displays."""
+    if not most:
+        return []
+    parts = ", ".join(f"{places} in {_WHERE[block]}" for block, places in most.items())
+    return [f"The file writes its numbers with at most this many decimals: {parts}."]
