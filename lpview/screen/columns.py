@@ -136,13 +136,18 @@ def widths_of(names: Sequence[str], labels: Mapping[int, Label]) -> Widths:
 def layout(width: int, cursor: int, spine: int, widths: Widths) -> Layout:
     """Fit columns into ``width`` cells, the more important ones first.
 
-    Units and labels take what is left when nothing else fits: first to go, as width shrinks.
+    Labels come before sides, which the ledger shows too; otherwise units and labels take what
+    is left when nothing else fits.
     """
     longest = widths.name
     left = width - cursor - spine - 3 * (GAP + NUMBER) - GAP
     primal, prices, is_apart = 1, 1, True
     for *chosen, cells, enough in _STEPS:
-        if left - cells < max(NARROWEST_NAME, min(longest, enough)):
+        wanted = min(longest, enough)
+        if chosen[0] == 3 and widths.with_label > longest:
+            label = min(widths.with_label, ENOUGH_NAME)
+            wanted = max(wanted, label + (1 + widths.unit if widths.unit else 0))
+        if left - cells < max(NARROWEST_NAME, wanted):
             break
         primal, prices, is_apart = chosen[0], chosen[1], bool(chosen[2])
         left -= cells
