@@ -10,7 +10,12 @@ from difflib import get_close_matches
 from importlib import import_module
 
 from lpview import __version__
-from lpview.options.check import add_report_options, add_route_options, wrong_check_use
+from lpview.options.check import (
+    REPORT_OPTIONS,
+    add_report_options,
+    add_route_options,
+    wrong_check_use,
+)
 from lpview.options.curve import add_curve_options
 from lpview.options.inputs import add_input_options, add_plan_options
 from lpview.options.prices import (
@@ -67,12 +72,16 @@ def told(error: Exception) -> tuple[str, int]:
 
 
 def _with_command(given: list[str]) -> list[str]:
-    """``lpview MODEL`` opens the mirror in a terminal, and is the check elsewhere."""
+    """``lpview MODEL`` opens the mirror in a terminal, and is the check elsewhere.
+
+    So it is where an option asks for the check's report.
+    """
     if not given or given[0] in _COMMANDS or (given[0].startswith("-") and given[0] != "-"):
         return given
     if not os.path.lexists(given[0]) and get_close_matches(given[0], _COMMANDS, 1, 0.75):
         return given  # a mistyped command, which the parser refuses with the list of them
-    can_open = sys.stdin.isatty() and sys.stdout.isatty() and given[0] != "-"
+    is_report = any(word.partition("=")[0] in REPORT_OPTIONS for word in given[1:])
+    can_open = sys.stdin.isatty() and sys.stdout.isatty() and given[0] != "-" and not is_report
     return ["open" if can_open else "check", *given]
 
 

@@ -72,7 +72,7 @@ def _as_asked(reading: Reading, source: str, how: ReadAs) -> Reading:
         labels = read_label_file(how.labels, reading.model)
         reading = replace(reading, labels=labels)
         if own:
-            reading = remarked(reading, "the model's own labels replaced by those of --labels")
+            reading = reading.remarked("the model's own labels replaced by those of --labels")
     return reading
 
 
@@ -83,7 +83,7 @@ def _turned_back(reading: Reading, source: str) -> Reading:
         wrong = Mistake(source, "minimize with --negated", "maximize", advice=advice)
         raise InputError([wrong])
     said = "costs negated back, as --negated asks: minimize became maximize"
-    return remarked(replace(reading, model=negated(reading.model)), said)
+    return replace(reading, model=negated(reading.model)).remarked(said)
 
 
 def _with_integers(reading: Reading, source: str, how: ReadAs) -> Reading:
@@ -96,12 +96,6 @@ def _with_integers(reading: Reading, source: str, how: ReadAs) -> Reading:
         return linear(reading, source)
     plan = read_plan(how.fix_integers, reading.model, how.decimal, needed=reading.integers)
     return fixed(reading, plan, source)
-
-
-def remarked(reading: Reading, remark: str) -> Reading:
-    """The reading with one more thing that every report says of it."""
-    remarks = (*reading.notes.remarks, remark)
-    return replace(reading, notes=replace(reading.notes, remarks=remarks))
 
 
 def negated(lp: LinearProgram) -> LinearProgram:

@@ -43,7 +43,7 @@ def linear(reading: Reading, source: str) -> Reading:
 def relaxed(reading: Reading) -> Reading:
     """The linear relaxation: integer columns may take any value within their bounds."""
     if not reading.integers:
-        return _remarked(reading, "no integer columns to relax")
+        return reading.remarked("no integer columns to relax")
     scope = Scope(InPlace.RELAXED, len(reading.integers))
     return replace(reading, integers=(), notes=replace(reading.notes, scope=scope))
 
@@ -64,7 +64,7 @@ def fixed(reading: Reading, plan: GivenPlan, source: str) -> Reading:
         Values are no whole numbers, or outside of the column's bounds.
     """
     if not reading.integers:
-        return _remarked(reading, "no integer columns to fix")
+        return reading.remarked("no integer columns to fix")
     values = {j: exact_value(plan.x.values[j], plan.x.odd.get(j)) for j in reading.integers}
     mistakes = [m for j in values if (m := _mistake(reading.model, j, values[j], plan, source))]
     if mistakes:
@@ -77,7 +77,7 @@ def fixed(reading: Reading, plan: GivenPlan, source: str) -> Reading:
             f"{len(unlisted)} of {_columns(reading.integers)} {verb} not in "
             f"{printable(plan.file)} and {was} fixed at 0, the first {first}"
         )
-        reading = _remarked(reading, remark)
+        reading = reading.remarked(remark)
     scope = Scope(InPlace.FIXED, len(reading.integers), printable(plan.file))
     model = _fixed_model(reading.model, values)
     return replace(reading, model=model, integers=(), notes=replace(reading.notes, scope=scope))
@@ -115,11 +115,6 @@ def _fixed_model(lp: LinearProgram, values: dict[int, Fraction]) -> LinearProgra
             if value != exact_value(ends[j]):
                 kept[j] = value
     return replace(lp, lower=lower, upper=upper, odd=frozen_odd(odd))
-
-
-def _remarked(reading: Reading, remark: str) -> Reading:
-    notes = replace(reading.notes, remarks=(*reading.notes.remarks, remark))
-    return replace(reading, notes=notes)
 
 
 def _columns(columns: Sequence[int]) -> str:

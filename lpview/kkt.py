@@ -53,7 +53,8 @@ class Residuals:
     @property
     def scaled(self) -> Vector:
         """``absolute / max(1, term)``."""
-        return self.absolute / np.maximum(1.0, self.term)
+        with np.errstate(invalid="ignore", over="ignore"):  # beyond the doubles: nan, which fails
+            return self.absolute / np.maximum(1.0, self.term)
 
     @property
     def relative(self) -> Vector:

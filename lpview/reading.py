@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import enum
 from collections.abc import Mapping
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 from lpview.labels import NO_LABELS, Labels
 from lpview.model import LinearProgram
@@ -82,3 +82,8 @@ class Reading:
     """Labels, units and groups that came with the model."""
     integers: tuple[int, ...] = ()
     """Columns, by index, whose values the file wants to be whole numbers."""
+
+    def remarked(self, remark: str) -> Reading:
+        """The same with one more thing that every report says of it."""
+        notes = replace(self.notes, remarks=(*self.notes.remarks, remark))
+        return replace(self, notes=notes)

@@ -158,7 +158,7 @@ def _parse_texts(texts: Sequence[str], words: Mapping[str, float], mark: Decimal
             wrong[place] = str(error)
         if exact is not None:
             odd[place] = exact
-    return Numbers(values, odd, wrong, 0 if wrong else _most_decimals(rest), empty)
+    return Numbers(values, odd, wrong, 0 if wrong else most_places(rest), empty)
 
 
 def _floats(texts: Sequence[str]) -> Vector | None:
@@ -186,7 +186,7 @@ def _suspects(texts: Sequence[str], values: Vector) -> list[int]:
     ]
 
 
-def _most_decimals(texts: Sequence[str]) -> int:
+def most_places(texts: Sequence[str]) -> int:
     """The most digits after a decimal point; an exponent moves it."""
     joined = ",".join(texts)
     scaled: list[str] = []

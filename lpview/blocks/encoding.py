@@ -29,7 +29,7 @@ def text_of(data: bytes, file: str) -> str:
     of which may be packed by gzip.
     """
     if data.startswith(_GZIP):
-        data = _unpacked(data, file)
+        data = unpacked(data, file)
     elif file.casefold().endswith(".gz") and data:
         advice = "take .gz off its name if it is not packed"
         raise InputError([Mistake(file, "a gzip archive", "other data", advice=advice)])
@@ -42,7 +42,8 @@ def text_of(data: bytes, file: str) -> str:
     return _decoded(data[len(mark) :], _MARKS.get(mark, "utf-8"), file)
 
 
-def _unpacked(data: bytes, file: str) -> bytes:
+def unpacked(data: bytes, file: str) -> bytes:
+    """What a gzip archive holds, up to `MOST_BYTES`. Raises `InputError`."""
     import gzip  # only for what is packed
     import zlib
 

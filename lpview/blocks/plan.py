@@ -7,7 +7,6 @@ import re
 from collections.abc import Sequence
 from dataclasses import dataclass, replace
 from fractions import Fraction
-from pathlib import Path
 from types import MappingProxyType
 
 import numpy as np
@@ -17,7 +16,7 @@ from lpview.blocks.cells import Cells, column, read_numbers
 from lpview.blocks.layout import PLAN_BLOCKS
 from lpview.blocks.mistakes import Mistake, Mistakes, Problem, quoted
 from lpview.blocks.names import Index, look_up, read_names
-from lpview.blocks.source import read_file
+from lpview.blocks.source import from_bytes, read_bytes
 from lpview.blocks.structure import Block, blocks_by_name
 from lpview.given import GivenPlan, Written
 from lpview.model import LinearProgram, Vector
@@ -79,7 +78,8 @@ def read_plan(
     Raises `InputError` with all mistakes found, if there are any.
     """
     mistakes = Mistakes()
-    source = replace(read_file(file), kinds=PLAN_BLOCKS, implied="x", usual=decimal)
+    data = read_bytes(file)
+    source = replace(from_bytes(data, file), kinds=PLAN_BLOCKS, implied="x", usual=decimal)
     blocks = blocks_by_name([source], mistakes)
     advice = IGNORE if needed is None else ""
     columns = _Lines("column", lp.columns, ignore_unknown, advice)
@@ -93,7 +93,7 @@ def read_plan(
     if blocks["z"] and not blocks["y"] and not mistakes.among("y"):
         mistakes.add(Mistake(file, "the block [y] beside [z]", "none"))
     mistakes.stop([file])
-    digest = hashlib.sha256(Path(file).read_bytes()).hexdigest()
+    digest = hashlib.sha256(data).hexdigest()
     return GivenPlan(file, digest, x, y, z, tuple(dict.fromkeys(unknown)))
 
 

@@ -77,7 +77,7 @@ class Source:
 
 def read_path(path: str | Path, decimal: str | None = None) -> list[Source]:
     """The files of a model: one, or those of a folder. Raises `InputError`."""
-    if not Path(path).is_dir():
+    if not str(path) or not Path(path).is_dir():
         return [read_file(str(path), decimal=decimal, what="a file or folder")]
     sources: list[Source] = []
     mistakes: list[Mistake] = []
@@ -94,7 +94,10 @@ def read_path(path: str | Path, decimal: str | None = None) -> list[Source]:
             sources.append(read_file(there[0] if there else plain, block, decimal))
         except InputError as error:
             mistakes += error.mistakes
-    mistakes += _misnamed(path)
+    try:
+        mistakes += _misnamed(path)
+    except OSError as error:
+        mistakes.append(_unreadable(str(path), error))
     if mistakes:
         raise InputError(mistakes)
     return sources
@@ -112,19 +115,28 @@ def _misnamed(path: str | Path) -> list[Mistake]:
     ]
 
 
+def _unreadable(file: str, error: OSError) -> Mistake:
+    return Mistake(file, "a readable file", f"'{error.strerror or type(error).__name__}'")
+
+
 def read_file(
     file: str, block: str = "", decimal: str | None = None, what: str = "a file"
 ) -> Source:
     """The text of one file; ``what`` it may be, in words. Raises `InputError`."""
+    wanted = f"a file with the block [{block}]" if block else what
+    return from_bytes(read_bytes(file, wanted), file, block, decimal)
+
+
+def read_bytes(file: str, what: str = "a file") -> bytes:
+    """The bytes of one file; ``what`` it should be, in words. Raises `InputError`."""
     try:
-        data = Path(file).read_bytes()
+        if file:
+            return Path(file).read_bytes()
     except FileNotFoundError:
-        wanted = f"a file with the block [{block}]" if block else what
-        raise InputError([Mistake(file, wanted, "nothing of that name")]) from None
+        pass
     except OSError as error:
-        reason = error.strerror or type(error).__name__
-        raise InputError([Mistake(file, "a readable file", f"'{reason}'")]) from None
-    return from_bytes(data, file, block, decimal)
+        raise InputError([_unreadable(file, error)]) from None
+    raise InputError([Mistake(file or "''", what, "nothing of that name")])
 
 
 def from_bytes(data: bytes, file: str, block: str = "", decimal: str | None = None) -> Source:

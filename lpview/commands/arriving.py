@@ -7,7 +7,6 @@ import shlex
 import sys
 from collections.abc import Callable, Sequence
 from pathlib import Path
-from typing import TYPE_CHECKING
 
 from lpview.blocks import InputError
 from lpview.blocks.mistakes import Mistake, quoted
@@ -20,10 +19,6 @@ from lpview.options.inputs import input_words, plan_words
 from lpview.outcomes import Examination, Request, SecondRoute
 from lpview.reading import Reading
 from lpview.run import Method, SolveSettings, Watch
-
-if TYPE_CHECKING:  # the check alone starts sooner without them
-    pass
-
 
 Line = tuple[str, str]
 """``"row"`` or ``"column"``, and a name."""

@@ -14,7 +14,6 @@ from lpview.blocks.mistakes import Mistake, quoted
 from lpview.commands import arriving, leaving
 from lpview.decimals import number_text
 from lpview.model import LinearProgram
-from lpview.options.curve import add_curve_options as add_options
 from lpview.outcomes import Examination, Optimal
 from lpview.prices.curve import Beyond, Curve, NoCurve, Why
 from lpview.prices.number import Number, Part, bound_of, side_of
@@ -26,8 +25,6 @@ from lpview.report.check import report, verdict
 from lpview.report.curve import curve_report
 from lpview.run import Watch
 from lpview.solver import solve, warm_model
-
-__all__ = ["add_options", "curve"]
 
 WALKING = ("following the curve", "iteration")
 """What the progress line says."""

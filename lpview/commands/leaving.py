@@ -10,6 +10,7 @@ from lpview import cli
 from lpview.outcomes import Examination, NoOptimum, Optimal
 from lpview.reading import Notes
 from lpview.report.document import Document
+from lpview.report.heads import noticed
 
 
 def status(found: Examination) -> int:
@@ -23,8 +24,8 @@ def tell_notes(source: str, notes: Notes) -> None:
     """What a report would say of the reading, on standard error, where data are written."""
     if notes.scope:
         sys.stderr.write(f"{source}: {notes.scope_words}\n")
-    if notes.remarks:
-        sys.stderr.write(f"{source}: noticed while reading: {', '.join(notes.remarks)}\n")
+    for text in noticed(notes):
+        sys.stderr.write(f"{source}: {text}\n")
 
 
 def rendered(document: Document, form: str, is_page: bool = False) -> str:

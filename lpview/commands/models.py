@@ -3,15 +3,11 @@
 from __future__ import annotations
 
 import argparse
-from typing import TYPE_CHECKING
 
 from lpview import cli
 from lpview.blocks import write_blocks, write_labels
 from lpview.commands.arriving import read
 from lpview.commands.leaving import tell_notes, write
-
-if TYPE_CHECKING:  # the check alone starts sooner without them
-    pass
 
 
 def dual(options: argparse.Namespace) -> list[int]:

@@ -10,7 +10,7 @@ from collections.abc import Iterator
 
 from lpview.model import Sense
 from lpview.mps.fields import VALUELESS
-from lpview.mps.matrix import DROPPED
+from lpview.mps.matrix import LEFT_OUT
 from lpview.mps.parts import Parts
 
 
@@ -45,7 +45,7 @@ def _sides(parts: Parts) -> Iterator[str]:
     for name, found in (("RHS", parts.rhs), ("RANGES", parts.ranges)):
         yield name
         for row, text in zip(found.row.tolist(), found.numerals.texts, strict=True):
-            if parts.rows.kept[row] != DROPPED:  # it would take these for the objective's
+            if parts.rows.kept[row] != LEFT_OUT:  # it would take these for the objective's
                 yield f" s r{row} {text}"
 
 

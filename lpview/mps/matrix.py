@@ -20,7 +20,7 @@ NO_COMMENT = "a comment that begins in the first column, or a name that does not
 
 _ONCE = "every pair of a column and a row once"
 
-OBJECTIVE, DROPPED = -1, -2
+OBJECTIVE, LEFT_OUT = -1, -2
 """In place of an index: the first N row, and the others."""
 
 
@@ -37,7 +37,7 @@ class Rows:
     index: Mapping[str, int]
     """Place of each name among all."""
     kept: Places
-    """For each, its place among the constraints, or `OBJECTIVE` or `DROPPED`."""
+    """For each, its place among the constraints, or `OBJECTIVE` or `LEFT_OUT`."""
 
     @property
     def constraints(self) -> tuple[str, ...]:
@@ -47,7 +47,9 @@ class Rows:
     @property
     def dropped(self) -> tuple[str, ...]:
         """Names of N rows after the first."""
-        return tuple(n for n, k in zip(self.names, self.kept.tolist(), strict=True) if k == DROPPED)
+        return tuple(
+            n for n, k in zip(self.names, self.kept.tolist(), strict=True) if k == LEFT_OUT
+        )
 
 
 @dataclass(frozen=True)
@@ -88,7 +90,7 @@ def read_rows(lines: Sequence[Line], place: Place) -> Rows:
             kinds.append(kind)
     free = [k for k, kind in enumerate(kinds) if kind == "N"]
     kept = np.cumsum([kind != "N" for kind in kinds], dtype=np.int64) - 1
-    kept[free] = DROPPED
+    kept[free] = LEFT_OUT
     kept[free[:1]] = OBJECTIVE
     return Rows(tuple(index), tuple(kinds), where, index, kept)
 

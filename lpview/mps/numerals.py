@@ -2,21 +2,19 @@
 
 from __future__ import annotations
 
-import re
 from collections.abc import Sequence
 from dataclasses import dataclass, replace
 from fractions import Fraction
 
 import numpy as np
 
-from lpview.blocks.cells import Numbers, parse_all
+from lpview.blocks.cells import Numbers, most_places, parse_all
 from lpview.blocks.mistakes import Place, Problem, quoted
 from lpview.decimals import exact_value
 
 INFINITE = 1e20
 """Numbers of this size and above are taken for infinite, by the solver and by most readers."""
 
-_DECIMALS = re.compile(r"\.([0-9]+)")
 _WORDS = {
     sign + word: value
     for sign, value in (("", np.inf), ("+", np.inf), ("-", -np.inf))
@@ -92,7 +90,7 @@ def exact(numbers: Numbers, place: int) -> Fraction:
 
 def most_decimals(texts: Sequence[str]) -> int:
     """The most digits that any of these numerals has after its decimal mark."""
-    return max(map(len, _DECIMALS.findall(" ".join(texts))), default=0)
+    return most_places([_decimal(text) for text in texts])
 
 
 def _parsed(texts: Sequence[str]) -> Numbers:

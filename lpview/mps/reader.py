@@ -10,6 +10,7 @@ from scipy.sparse import csr_array
 
 from lpview.blocks.mistakes import Mistakes, Place
 from lpview.blocks.names import names_alike
+from lpview.blocks.source import read_bytes
 from lpview.model import LinearProgram, frozen_odd
 from lpview.mps.bounds import read_bounds
 from lpview.mps.copy import plain_copy
@@ -20,7 +21,7 @@ from lpview.mps.parts import Parts
 from lpview.mps.remarks import remarks
 from lpview.mps.sections import Sections, read_sections
 from lpview.mps.sides import offset, read_per_row, row_sides
-from lpview.mps.text import model_name, read_bytes, text_of
+from lpview.mps.text import model_name, text_of
 from lpview.reading import Notes, Reading
 
 

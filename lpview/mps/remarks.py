@@ -10,7 +10,7 @@ from lpview.blocks.mistakes import quoted
 from lpview.decimals import number_text
 from lpview.mps.bounds import UPPER
 from lpview.mps.fields import Fields
-from lpview.mps.matrix import DROPPED, OBJECTIVE
+from lpview.mps.matrix import LEFT_OUT, OBJECTIVE
 from lpview.mps.parts import Parts
 from lpview.mps.sections import Sections
 
@@ -36,7 +36,7 @@ def _rows(parts: Parts) -> Iterator[str]:
         yield "no N row, so that every cost is 0"
     if rows.dropped:
         numbers = np.concatenate([parts.columns.row, parts.rhs.row, parts.ranges.row])
-        lost = int(np.count_nonzero(rows.kept[numbers] == DROPPED))
+        lost = int(np.count_nonzero(rows.kept[numbers] == LEFT_OUT))
         names = ", ".join(map(quoted, rows.dropped[:5])) + (
             f" and {len(rows.dropped) - 5} more" if len(rows.dropped) > 5 else ""
         )

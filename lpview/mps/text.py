@@ -2,12 +2,12 @@
 
 from __future__ import annotations
 
-import gzip
 import os
 import re
 import zlib
 from pathlib import Path
 
+from lpview.blocks.encoding import unpacked
 from lpview.blocks.mistakes import InputError, Mistake
 from lpview.mps.sections import SECTIONS, UNSUPPORTED
 
@@ -35,17 +35,6 @@ def model_name(path: str | Path) -> str:
     return Path(name.stem).stem if name.suffix.casefold() == ".gz" else name.stem
 
 
-def read_bytes(file: str) -> bytes:
-    """The bytes of a file. Raises `InputError`."""
-    try:
-        return Path(file).read_bytes()
-    except FileNotFoundError:
-        raise InputError([Mistake(file, "a file", "nothing of that name")]) from None
-    except OSError as error:
-        reason = error.strerror or type(error).__name__
-        raise InputError([Mistake(file, "a readable file", f"'{reason}'")]) from None
-
-
 def text_of(data: bytes, file: str) -> str:
     """The text in ``data``, each line ended by a line feed. Raises `InputError`.
 
@@ -53,7 +42,7 @@ def text_of(data: bytes, file: str) -> str:
     comments are often in another encoding, and nothing depends on them.
     """
     if data.startswith(_GZIP):
-        data = _unpacked(data, file)
+        data = unpacked(data, file)
     for start, kind in _KINDS.items():
         if data.startswith(start):
             raise InputError([Mistake(file, "UTF-8 text", kind)])
@@ -64,10 +53,3 @@ def text_of(data: bytes, file: str) -> str:
     if not text.strip():
         raise InputError([Mistake(file, "a linear program", "an empty file")])
     return text.replace("\r\n", "\n").replace("\r", "\n") if "\r" in text else text
-
-
-def _unpacked(data: bytes, file: str) -> bytes:
-    try:
-        return gzip.decompress(data)
-    except (OSError, EOFError, zlib.error):
-        raise InputError([Mistake(file, "a whole gzip archive", "a broken one")]) from None

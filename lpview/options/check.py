@@ -7,6 +7,15 @@ import argparse
 from lpview.options.inputs import wrong_plan_use
 from lpview.options.prices import add_line_options
 
+REPORT_OPTIONS = frozenset(
+    (
+        *("--format", "--full", "--row", "--column", "--families", "--summary", "--certificate"),
+        *("--prices", "--prove", "--plan", "--rounded", "--limit", "--complete"),
+        *("--ignore-unknown", "--output"),
+    )
+)
+"""What only a report can be asked for, so that ``lpview MODEL`` with it opens no screen."""
+
 
 def add_route_options(check: argparse.ArgumentParser) -> None:
     """What else the check can be told of how to solve."""

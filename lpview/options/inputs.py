@@ -94,6 +94,7 @@ def wrong_plan_use(options: argparse.Namespace) -> str:
         ("--families", options.families),
         ("--row or --column", options.lines),
         ("--summary", options.summary),
+        ("--second-route", options.second_route == "always"),
     ]
     for name, given in beside:
         if given:

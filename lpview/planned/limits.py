@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-import re
 from collections.abc import Sequence
 from dataclasses import dataclass
 
@@ -45,8 +44,7 @@ def limits_of(lp: LinearProgram, source: str, asked: Sequence[tuple[str, float]]
     amount = np.full(lp.m + lp.n, np.nan)
     mistakes = []
     for pattern, most in asked:
-        matches = _compiled(pattern).fullmatch
-        rows = [i for i, name in enumerate(lp.rows) if matches(name)]
+        rows = [i for i, name in enumerate(lp.rows) if _matches(pattern, name)]
         amount[rows] = most
         if not rows:
             expected = "a pattern that matches a row"
@@ -65,7 +63,19 @@ def limits_of(lp: LinearProgram, source: str, asked: Sequence[tuple[str, float]]
     return Limits(amount)
 
 
-def _compiled(pattern: str) -> re.Pattern[str]:
-    """The pattern; brackets, which are common in names, stand for themselves."""
-    parts = {"*": ".*", "?": "."}
-    return re.compile("".join(parts.get(c) or re.escape(c) for c in pattern), re.DOTALL)
+def _matches(pattern: str, name: str) -> bool:
+    """Whether a pattern matches a whole name; goes back to the last star only, so never long."""
+    at = here = 0
+    star = resume = -1
+    while here < len(name):
+        if at < len(pattern) and pattern[at] == "*":
+            star, resume = at, here
+            at += 1
+        elif at < len(pattern) and pattern[at] in ("?", name[here]):
+            at, here = at + 1, here + 1
+        elif star >= 0:
+            resume += 1
+            at, here = star + 1, resume
+        else:
+            return False
+    return not pattern[at:].strip("*")

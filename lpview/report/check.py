@@ -12,7 +12,7 @@ from lpview.proof.results import Proof, ProvedOptimal
 from lpview.repair.search import Infeasible
 from lpview.report import answer, certificate
 from lpview.report.document import Block, Command, Document, Facts, Pairs, Sentence, Table
-from lpview.report.heads import most_decimals, noticed, title
+from lpview.report.heads import about_reading, title
 from lpview.report.names import safe
 from lpview.report.numbers import count, residual
 from lpview.report.proof import proof_facts, proof_verdict
@@ -50,7 +50,7 @@ def report(
     beside = proof is not None and isinstance(found, Optimal) and contradicts(found, proof)
     return (
         Sentence(f"{title(head)}: {words}", strong=True),
-        Sentence("; ".join([shape(head.model), *noticed(head)])),
+        Sentence("; ".join([shape(head.model), *about_reading(head)])),
         *((Facts(facts),) if facts else ()),
         *((Sentence(BESIDE_THE_PROOF),) if beside else ()),
         *_body(found, full, tables, prices, bool(facts)),
@@ -125,8 +125,7 @@ def provenance(head: Head) -> Pairs:
         (
             "made with",
             f"lpview {__version__}, {run.solver}, Python {platform.python_version()}; tolerance "
-            f"{residual(request.tolerance)}, zero {residual(request.zero)}; "
-            f"{most_decimals(head)}",
+            f"{residual(request.tolerance)}, zero {residual(request.zero)}",
         ),
         ("solver options", (options or "none") + rescaled),
     )

@@ -11,7 +11,7 @@ from lpview.prices.curve import Beyond, Curve, NoCurve, is_same
 from lpview.prices.number import Number, Part
 from lpview.report.check import CAUTION
 from lpview.report.document import Block, Command, Document, Facts, Sentence, Table
-from lpview.report.heads import noticed_sentences, title
+from lpview.report.heads import reading_sentence, title
 from lpview.report.names import line_name
 from lpview.report.numbers import count, number, residual
 from lpview.report.plot import BRAILLE, PLAIN, Point, plot
@@ -54,14 +54,14 @@ def curve_report(found: Optimal, curve: Curve | NoCurve, table: bool, plain: boo
     if isinstance(curve, NoCurve):
         return (
             Sentence(f"{source}: no value curve", True),
-            *noticed_sentences(found.head),
+            *reading_sentence(found.head),
             Sentence(curve.reason),
             *closing,
         )
     tables = (_places(curve),) if table or curve.recorded else ()
     return (
         Sentence(f"{source}: value curve of {described(curve)}", strong=True),
-        *noticed_sentences(found.head),
+        *reading_sentence(found.head),
         Sentence(shape(curve)),
         Facts(_facts(curve, found.head)),
         *((_pieces(curve),) if curve.pieces else ()),

@@ -66,7 +66,7 @@ def as_json(found: Examination, curve: Curve | NoCurve | None) -> str:
         },
         "curve": _curve(curve) if isinstance(curve, Curve) else None,
         "reason": verdict(found) if curve is None else getattr(curve, "reason", None),
-        **({"noticed": noticed(head)} if noticed_anything(head) else {}),
+        **({"noticed": noticed(head)} if noticed_anything(head.notes) else {}),
         "settings": {"source": request.source, "command": request.command},
         "tool": {"lpview": __version__},
     }

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from lpview.outcomes import Head
+from lpview.reading import Notes
 from lpview.report.document import Sentence
 from lpview.report.names import safe
 from lpview.report.numbers import count
@@ -17,9 +18,9 @@ def title(head: Head, source: str = "") -> str:
     return safe(source or head.request.source) + (f" ({safe(scope)})" if scope else "")
 
 
-def noticed(head: Head) -> list[str]:
+def noticed(notes: Notes) -> list[str]:
     """One text on what reading noticed, where it noticed anything."""
-    notes, parts = head.notes, []
+    parts = []
     if notes.empty_coefficients:
         parts.append(f"{count(notes.empty_coefficients, 'empty coefficient')} read as 0")
     if notes.empty_costs:
@@ -35,12 +36,14 @@ def noticed(head: Head) -> list[str]:
     return ["noticed while reading: " + "; ".join(told)] if told else []
 
 
-def most_decimals(head: Head) -> str:
-    """Digits after the decimal mark, at most, by block: a spreadsheet exports what it displays."""
+def about_reading(head: Head) -> list[str]:
+    """The same, and the most decimals of each block: a spreadsheet exports what it displays."""
     found = head.notes.most_decimals.items()
-    return "most decimals " + (", ".join(f"{block} {most}" for block, most in found) or "none")
+    most = ", ".join(f"{block} {places}" for block, places in found)
+    return [*noticed(head.notes), *([f"most decimals {most}"] if most else [])]
 
 
-def noticed_sentences(head: Head) -> tuple[Sentence, ...]:
-    """The same as a sentence of its own."""
-    return tuple(map(Sentence, noticed(head)))
+def reading_sentence(head: Head) -> tuple[Sentence, ...]:
+    """The same as a sentence of its own, where there is anything to say."""
+    text = "; ".join(about_reading(head))
+    return (Sentence(text),) if text else ()

@@ -112,11 +112,11 @@ def _objective(found: Optimal) -> dict[str, Any]:
         "dual": plain(measured.dual_objective),
         "gap": plain(measured.gap),
         "at_stake": plain(measured.at_stake),
-        **_label(found.head.labels.objective),
+        **label(found.head.labels.objective),
     }
 
 
-def _label(known: Label) -> dict[str, str]:
+def label(known: Label) -> dict[str, str]:
     """Label, unit and group, as far as there are any."""
     fields = {"label": known.label, "unit": known.unit, "group": known.group}
     return {name: text for name, text in fields.items() if text}
@@ -150,39 +150,40 @@ def _constraints(found: Optimal) -> list[dict[str, Any]]:
     lp, side = found.head.model, found.measurement.rows
     fields = {
         "row": lp.rows,
-        "value": _numbers(side.value),
-        "lower": _numbers(lp.row_lower),
-        "upper": _numbers(lp.row_upper),
-        "slack": _numbers(side.slack),
-        "slack_lower": _numbers(side.below),
-        "slack_upper": _numbers(side.above),
-        "dual_value": _numbers(found.answer.y),
-        "complementarity": _numbers(side.complementarity),
+        "value": numbers(side.value),
+        "lower": numbers(lp.row_lower),
+        "upper": numbers(lp.row_upper),
+        "slack": numbers(side.slack),
+        "slack_lower": numbers(side.below),
+        "slack_upper": numbers(side.above),
+        "dual_value": numbers(found.answer.y),
+        "complementarity": numbers(side.complementarity),
         "flags": _flags(found, 0, lp.m),
     }
-    return _records(fields, found.head.labels.rows)
+    return records(fields, found.head.labels.rows)
 
 
 def _variables(found: Optimal) -> list[dict[str, Any]]:
     lp, side = found.head.model, found.measurement.columns
     fields = {
         "column": lp.columns,
-        "value": _numbers(found.answer.x),
-        "lower": _numbers(lp.lower),
-        "upper": _numbers(lp.upper),
-        "cost": _numbers(lp.c),
-        "reduced_cost": _numbers(found.answer.z),
-        "complementarity": _numbers(side.complementarity),
+        "value": numbers(found.answer.x),
+        "lower": numbers(lp.lower),
+        "upper": numbers(lp.upper),
+        "cost": numbers(lp.c),
+        "reduced_cost": numbers(found.answer.z),
+        "complementarity": numbers(side.complementarity),
         "flags": _flags(found, lp.m, lp.m + lp.n),
     }
-    return _records(fields, found.head.labels.columns)
+    return records(fields, found.head.labels.columns)
 
 
-def _records(fields: dict[str, Any], labels: Mapping[int, Label]) -> list[dict[str, Any]]:
+def records(fields: dict[str, Any], labels: Mapping[int, Label]) -> list[dict[str, Any]]:
+    """Columns of fields to an object a line, with its label where it has one."""
     names = tuple(fields)
     lines = [dict(zip(names, line, strict=True)) for line in zip(*fields.values(), strict=True)]
     for k, known in labels.items():
-        lines[k].update(_label(known))
+        lines[k].update(label(known))
     return lines
 
 
@@ -295,11 +296,10 @@ def _settings(head: Head) -> dict[str, Any]:
     }
 
 
-def _numbers(values: Vector) -> list[float | str]:
-    numbers = values.tolist()
-    if np.isfinite(values).all():
-        return numbers  # type: ignore[no-any-return]
-    return [plain(value) for value in numbers]
+def numbers(values: Vector) -> list[float | str]:
+    """Numbers, with strings for those that JSON lacks."""
+    found: list[float | str] = values.tolist()
+    return found if np.isfinite(values).all() else [plain(value) for value in values.tolist()]
 
 
 def plain(value: float) -> float | str:

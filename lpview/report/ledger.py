@@ -18,7 +18,7 @@ from lpview.proof.results import Proof, ProvedOptimal
 from lpview.report import asking
 from lpview.report.check import CAUTION, report, verdict
 from lpview.report.document import Block, Command, Document, Facts, Sentence, Table
-from lpview.report.heads import most_decimals, noticed, title
+from lpview.report.heads import reading_sentence, title
 from lpview.report.ledger_words import meaning
 from lpview.report.names import fitted
 from lpview.report.numbers import count, number, residual
@@ -58,7 +58,7 @@ def ledger_report(
             found = with_exact_zeros(found, proof)
     return (
         Sentence(f"{title(head)}: {words}", strong=True),
-        Sentence("; ".join([*noticed(head), most_decimals(head)])),
+        *reading_sentence(head),
         *([Sentence(problem)] if problem else []),
         *(
             block

@@ -22,7 +22,7 @@ from lpview.planned import (
 )
 from lpview.report.check import CAUTION, provenance, shape
 from lpview.report.document import Block, Command, Document, Facts, Sentence, Table
-from lpview.report.heads import noticed, title
+from lpview.report.heads import about_reading, title
 from lpview.report.names import line_name, safe
 from lpview.report.numbers import count, number, residual
 from lpview.report.plan_verdict import not_shown, verdict
@@ -50,7 +50,7 @@ def report(checked: CheckedPlan, full: bool = False) -> Document:
     beside = not_shown(checked)
     return (
         Sentence(words, strong=True),
-        Sentence("; ".join([shape(head.model), *noticed(head)])),
+        Sentence("; ".join([shape(head.model), *about_reading(head)])),
         *((Sentence(beside),) if beside else ()),
         _conditions(checked),
         Facts(facts(checked)),

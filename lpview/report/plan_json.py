@@ -60,7 +60,7 @@ from lpview.outcomes import Optimal
 from lpview.planned import CheckedPlan, PlanVerdict, failing_lines, violated, worst_limit
 from lpview.planned.judging import Found
 from lpview.report import json
-from lpview.report.json import plain
+from lpview.report.json import label, numbers, plain, records
 from lpview.report.names import line_kind_and_name
 
 OF_PLANS = (Flag.ZERO_SLACK, Flag.VIOLATED)
@@ -95,6 +95,7 @@ def _objective(checked: CheckedPlan) -> dict[str, Any]:
         "dual": plain(found.dual_objective) if priced else None,
         "gap": plain(found.gap) if priced else None,
         "at_stake": plain(found.at_stake) if priced else None,
+        **label(checked.outcome.head.labels.objective),
     }
 
 
@@ -140,20 +141,21 @@ def _line(checked: CheckedPlan, line: int) -> dict[str, str]:
 def _constraints(checked: CheckedPlan, flags: list[list[str]]) -> list[dict[str, Any]]:
     lp, side = checked.found.model, checked.found.written.rows
     y, limits = checked.found.plan.y, checked.judgement.limits.amount[: lp.m]
-    return _records(
+    return records(
         {
             "row": lp.rows,
-            "value": _numbers(side.value),
-            "lower": _numbers(lp.row_lower),
-            "upper": _numbers(lp.row_upper),
-            "slack": _numbers(side.slack),
-            "slack_lower": _numbers(side.below),
-            "slack_upper": _numbers(side.above),
+            "value": numbers(side.value),
+            "lower": numbers(lp.row_lower),
+            "upper": numbers(lp.row_upper),
+            "slack": numbers(side.slack),
+            "slack_lower": numbers(side.below),
+            "slack_upper": numbers(side.above),
             "dual_value": _or_none(None if y is None else y.values, lp.m),
             "complementarity": _products(checked, side),
             "flags": flags,
             "limit": [None if np.isnan(limit) else limit for limit in limits.tolist()],
-        }
+        },
+        checked.outcome.head.labels.rows,
     )
 
 
@@ -161,19 +163,20 @@ def _variables(checked: CheckedPlan, flags: list[list[str]]) -> list[dict[str, A
     lp, side = checked.found.model, checked.found.written.columns
     plan = checked.found.plan
     price = plan.z.values if plan.z is not None else None if plan.y is None else side.price
-    return _records(
+    return records(
         {
             "column": lp.columns,
-            "value": _numbers(plan.x.values),
-            "lower": _numbers(lp.lower),
-            "upper": _numbers(lp.upper),
-            "cost": _numbers(lp.c),
+            "value": numbers(plan.x.values),
+            "lower": numbers(lp.lower),
+            "upper": numbers(lp.upper),
+            "cost": numbers(lp.c),
             "reduced_cost": _or_none(price, lp.n),
             "complementarity": _products(checked, side),
             "flags": flags,
             "listed": plan.x.listed.tolist(),
-            "half_unit": _numbers(plan.x.half),
-        }
+            "half_unit": numbers(plan.x.half),
+        },
+        checked.outcome.head.labels.columns,
     )
 
 
@@ -182,17 +185,8 @@ def _products(checked: CheckedPlan, side: Side) -> list[Any]:
     return _or_none(side.complementarity if priced else None, side.value.size)
 
 
-def _records(columns: dict[str, Any]) -> list[dict[str, Any]]:
-    names = tuple(columns)
-    return [dict(zip(names, line, strict=True)) for line in zip(*columns.values(), strict=True)]
-
-
-def _numbers(values: Vector) -> list[Any]:
-    return [plain(value) for value in values.tolist()]
-
-
 def _or_none(values: Vector | None, size: int) -> list[Any]:
-    return [None] * size if values is None else _numbers(values)
+    return [None] * size if values is None else numbers(values)
 
 
 def _flags(checked: CheckedPlan) -> list[list[str]]:

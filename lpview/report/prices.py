@@ -16,7 +16,7 @@ from lpview.prices import LinePrices, Move, Moves, NoPrices
 from lpview.report import asking
 from lpview.report.check import CAUTION, provenance, shape, verdict
 from lpview.report.document import Block, Command, Document, Facts, Sentence, Table
-from lpview.report.heads import noticed, title
+from lpview.report.heads import about_reading, title
 from lpview.report.interior import interior_fact
 from lpview.report.ledger import heading, line_options
 from lpview.report.names import fitted, line_name
@@ -76,7 +76,7 @@ def opening(found: Optimal) -> tuple[Block, ...]:
     head = found.head
     return (
         Sentence(f"{title(head)}: {verdict(found)}", strong=True),
-        Sentence("; ".join([shape(head.model), *noticed(head)])),
+        Sentence("; ".join([shape(head.model), *about_reading(head)])),
     )
 
 

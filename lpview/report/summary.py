@@ -187,7 +187,7 @@ def _warnings(head: Head) -> list[str]:
             else f"{empty} empty cells of the model were"
         )
         words.append(f"{cells} taken as 0.")
-    others = replace(head, notes=replace(notes, empty_coefficients=0, empty_costs=0))
+    others = replace(notes, empty_coefficients=0, empty_costs=0)
     words += [f"{text[0].upper()}{text[1:]}." for text in noticed(others)]
     return words + _decimals(notes.most_decimals)
 

@@ -97,7 +97,7 @@ class LinkedScreen(Screen[int | None]):
         """What stands in place of the model, and what reading it did; the check has it all."""
         head = self.found.head
         if head.notes.scope or head.notes.remarks:
-            self.say("; ".join([*filter(None, [head.notes.scope_words]), *noticed(head)]))
+            self.say("; ".join([*filter(None, [head.notes.scope_words]), *noticed(head.notes)]))
 
     # Linking -----------------------------------------------------------------
 

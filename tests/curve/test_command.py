@@ -77,7 +77,9 @@ def test_the_report(capfd):
     assert status == [cli.DONE] and err == "" and out.isascii()
     lines = out.splitlines()
     assert lines[0] == f"{GLASS}: value curve of the right-hand side of row r2"
-    assert lines[1] == "concave, as theory demands: 3 pieces, 2 breakpoints"
+    assert lines[1] == "most decimals c 0, A 0, b 0"
+    assert lines[2] == "concave, as theory demands: 3 pieces, 2 breakpoints"
+    del lines[1]
     assert lines[3:6] == [
         "as it stands  12, optimal objective 36",
         "below 0       no plan is left",

@@ -197,3 +197,8 @@ def test_a_plan_has_its_own_decimal_mark(capsys: pytest.CaptureFixture[str]) -> 
     unclear = "column;value\nnurse;20,125\n"
     Path("p.csv").write_text(unclear, encoding="utf-8")
     assert run("check", *words, capsys=capsys)[0] == 0
+
+
+def test_an_empty_name_is_told_as_one(capsys: pytest.CaptureFixture[str]) -> None:
+    status, _, err = run("check", "", capsys=capsys)
+    assert (status, err) == (2, "'': expected a file or folder, got nothing of that name\n")

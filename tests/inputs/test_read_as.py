@@ -136,3 +136,11 @@ def test_wrong_use_is_told(arguments: tuple[str, ...], capsys: pytest.CaptureFix
         cli.main(arguments)
     assert caught.value.code == 2
     assert capsys.readouterr().err.splitlines()[-1].endswith(f"error: {WRONG[arguments]}")
+
+
+def test_options_of_the_report_open_no_screen(monkeypatch: pytest.MonkeyPatch) -> None:
+    monkeypatch.setattr("sys.stdin.isatty", lambda: True, raising=False)
+    monkeypatch.setattr("sys.stdout.isatty", lambda: True, raising=False)
+    for option in ("--summary", "--plan=p.csv", "--format=json"):
+        assert cli._with_command(["x.csv", option])[0] == "check"
+    assert cli._with_command(["x.csv", "--labels", "l.csv"])[0] == "open"

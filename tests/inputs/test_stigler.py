@@ -7,8 +7,11 @@ The units of the nutrients are from memory.
 
 from __future__ import annotations
 
+import tomllib
 from decimal import ROUND_DOWN
+from fractions import Fraction
 from pathlib import Path
+from typing import Any
 
 import pytest
 
@@ -18,21 +21,28 @@ from lpview.report.worth import written_out
 DATA = Path(__file__).resolve().parents[1] / "data"
 GIVEN = [str(DATA / "textbook" / "a14.csv"), "--labels", str(DATA / "labels" / "a14.csv")]
 
-BASKET = {
-    "Wheat Flour (Enriched)": 1929277590843 / 65357009378779,
-    "Liver (Beef)": 247383769197 / 130714018757558,
-    "Cabbage": 732941949560 / 65357009378779,
-    "Spinach": 654571424179 / 130714018757558,
-    "Navy Beans, Dried": 7977288797575 / 130714018757558,
-}
-"""Dollars a day of each food, exact."""
+TEXTBOOK = DATA / "textbook"
 
-LIMITS = {  # price, right-hand side, and the ends between which the price holds
-    "vitamin B2 (riboflavin)": ("0.016358", 2.7, 2.61158392, 3.97001507, "mg"),
-    "calories (energy)": ("0.00876515", 3, 1.84748762, 3.12196078, "Mcal"),
-    "calcium": ("0.0317377", 0.8, 0.17831018, 0.99768595, "g"),
-    "vitamin C (ascorbic acid)": ("0.000144118", 75, 15.03494231, 727.88964662, "mg"),
-    "vitamin A": ("0.000400233", 5, 0.63591361, 11.42951696, "kIU"),
+
+def _case(file: str) -> dict[str, Any]:
+    cases = tomllib.loads((TEXTBOOK / file).read_text(encoding="utf-8"))["case"]
+    found: dict[str, Any] = next(case for case in cases if case["id"] == "A14")
+    return found
+
+
+BASKET = {name: Fraction(value) for name, value in _case("cases.toml")["x"].items()}
+"""Dollars a day of each food of the published plan, exact."""
+PRICES = {name: Fraction(value) for name, value in _case("cases.toml")["y"].items()}
+"""Dollars per unit of each nutrient, exact."""
+ENDS = _case("ranges.toml")["rhs"]
+"""Ends between which each price holds, exact."""
+
+LIMITS = {  # in the order of the page: name and label, right-hand side, unit
+    "vitamin B2": ("vitamin B2 (riboflavin)", "2.7", "mg"),
+    "calories": ("calories (energy)", "3", "Mcal"),
+    "calcium": ("calcium", "0.8", "g"),
+    "vitamin C": ("vitamin C (ascorbic acid)", "75", "mg"),
+    "vitamin A": ("vitamin A", "5", "kIU"),
 }
 
 
@@ -47,13 +57,13 @@ def test_the_food_plan_in_dollars(capsys: pytest.CaptureFixture[str]) -> None:
     for name, dollars in BASKET.items():
         part = out[out.index(f"column {name}") :]
         value = next(line for line in part.splitlines() if line.startswith("value"))
-        assert value.split() == ["value", f"{dollars:.6g}", "dollar"]
+        assert value.split() == ["value", f"{float(dollars):.6g}", "dollar"]
 
 
 def test_prices_are_in_dollars_per_unit_of_the_nutrient(capsys: pytest.CaptureFixture[str]) -> None:
     out = run("--row", "calories", "--row", "vitamin C", capsys=capsys)
-    assert "dual value              0.00876515 dollar per Mcal\n" in out
-    assert "dual value              0.000144118 dollar per mg\n" in out
+    for name, unit in (("calories", "Mcal"), ("vitamin C", "mg")):
+        assert f"dual value              {float(PRICES[name]):.6g} dollar per {unit}\n" in out
 
 
 def test_the_page(capsys: pytest.CaptureFixture[str]) -> None:
@@ -63,11 +73,13 @@ def test_the_page(capsys: pytest.CaptureFixture[str]) -> None:
     assert lines[1] == "The best plan found costs 0.108662 dollar (cost of a day's food)."
     shown = [line for line in lines if line.startswith("Limit ")]
     assert len(shown) == len(LIMITS)
-    for line, (name, (price, side, low, high, unit)) in zip(shown, LIMITS.items(), strict=True):
-        # The published ends have nine or ten digits, of which four are shown, cut.
-        less, more = (written_out(far, 4, ROUND_DOWN) for far in (side - low, high - side))
-        worth = f"each {unit} required is worth {float(price):.4g} dollar"
-        assert line.startswith(f"Limit {name}, at least {side:g} {unit}: {worth}: ")
+    assert len(shown) == sum(price != 0 for price in PRICES.values())
+    for line, (row, (name, side, unit)) in zip(shown, LIMITS.items(), strict=True):
+        low, high = map(Fraction, ENDS[row])
+        far = (Fraction(side) - low, high - Fraction(side))
+        less, more = (written_out(float(one), 4, ROUND_DOWN) for one in far)
+        worth = f"each {unit} required is worth {float(PRICES[row]):.4g} dollar"
+        assert line.startswith(f"Limit {name}, at least {side} {unit}: {worth}: ")
         assert f": less saves it (for {less} {unit}), more costs it (for {more} {unit}" in line
     assert "No other plan is as good." in lines
 

@@ -401,3 +401,15 @@ TOLD = (
     f"m.mps:10: [RHS] constant of the objective: expected 0, got 1 {SINCE}",
     f"m.mps:15: [BOUNDS] upper bound of 'x': expected 3, got 4 {SINCE}",
 )
+
+
+def test_decimals_are_counted_as_in_blocks() -> None:
+    text = "ROWS\n N o\n L r\nCOLUMNS\n x o -1.25E-03 r 1.5e3\nRHS\n r 2.50D1\nENDATA\n"
+    assert dict(read(text).notes.most_decimals) == {"c": 5, "A": 0, "b": 1}
+
+
+def test_what_is_called_small_is_what_the_reader_drops() -> None:
+    from lpview.mps.remarks import SMALL
+    from lpview.solver.mps_file import DROPPED
+
+    assert SMALL == DROPPED

@@ -248,7 +248,11 @@ def test_the_control_passes() -> None:
 
 def test_archives_that_are_none() -> None:
     for data, message in (
-        (b"\x1f\x8b\x08nonsense", "m.mps.gz: expected a whole gzip archive, got a broken one"),
+        (
+            b"\x1f\x8b\x08nonsense",
+            "m.mps.gz: expected a whole gzip archive, got one that ends too early; "
+            "pack it or copy it again",
+        ),
         (b"PK\x03\x04", "m.mps.gz: expected UTF-8 text, got a zip archive"),
         (b"\xff\xfeR\0", "m.mps.gz: expected UTF-8 text, got UTF-16"),
     ):

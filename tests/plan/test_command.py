@@ -2,9 +2,12 @@
 
 from __future__ import annotations
 
+import hashlib
 import io
 import json
+import os
 import shlex
+import threading
 from pathlib import Path
 
 import pytest
@@ -138,7 +141,7 @@ def test_the_report_of_a_plan_that_breaks_a_row(run):
         """\
 wyndor.csv with plan.csv: NOT FEASIBLE as written nor within its rounding: 2 lines violated, 2 \
 beyond it
-maximize, 3 constraints, 2 variables, 4 nonzero coefficients
+maximize, 3 constraints, 2 variables, 4 nonzero coefficients; most decimals c 0, A 0, b 0
 
 condition           as written  within rounding  worst line  scaled  absolute  tolerance
 primal feasibility  FAILED      FAILED           row plant2    0.45        10       1e-9
@@ -554,3 +557,38 @@ def test_the_longest_report_has_at_most_40_lines(run):
     assert "worst first, by residual over what is allowed: 20 of 20" in run(
         given, "--limit", "r*=1", "--full", model=model
     )[1]  # fmt: skip
+
+
+def test_the_digest_is_that_of_what_was_read(run, tmp_path) -> None:
+    pipe = tmp_path / "pipe"
+    os.mkfifo(pipe)
+    writer = threading.Thread(target=pipe.write_text, args=(PLAN,))
+    writer.start()
+    _, out, _ = run(PLAN, "--plan", "pipe")
+    writer.join()
+    assert hashlib.sha256(PLAN.encode()).hexdigest() in out
+
+
+def test_labels_stand_in_json(run) -> None:
+    labels = "\n[labels]\nkind,name,label,unit,group\nrow,plant1,first plant,hours,\n"
+    labels += "column,doors,glass doors,batch,\nobjective,,profit,EUR,\n"
+    _, out, _ = run(PLAN, "--format", "json", model=WYNDOR + labels)
+    found = json.loads(out)
+    assert found["constraints"][0]["unit"] == "hours"
+    assert "unit" not in found["constraints"][1]
+    assert found["variables"][0]["label"] == "glass doors"
+    assert found["objective"]["unit"] == "EUR"
+
+
+@pytest.mark.parametrize("form", ["text", "json"])
+def test_numbers_beyond_all_measure_draw_no_warning(run, form) -> None:
+    far = "[x]\ncolumn,value\ndoors,1e299\nwindows,-1e299\n[y]\nrow,value\nplant1,1e299\n"
+    status, out, err = run(far, "--format", form)
+    assert (status, err) == (1, "")
+    assert out
+
+
+def test_the_second_route_is_about_a_solver_and_not_about_a_plan(run) -> None:
+    with pytest.raises(SystemExit) as caught:
+        run(PLAN, "--second-route")
+    assert caught.value.code == 2

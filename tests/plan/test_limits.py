@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from dataclasses import replace
+
 import numpy as np
 import pytest
 
@@ -63,8 +65,17 @@ def test_the_last_pattern_that_matches_counts():
 
 @pytest.mark.parametrize("pattern", ["hea", "HEAT*", "heat[[]1]", "", "heat[1] "])
 def test_a_pattern_that_matches_no_row_is_refused(pattern):
-    with pytest.raises(InputError):
+    with pytest.raises(InputError) as caught:
         amounts((pattern, 1.0))
+    assert "--limit: expected a pattern that matches a row, got " in str(caught.value)
+
+
+def test_a_pattern_of_many_stars_takes_no_time():
+    lp = wyndor()
+    lp = replace(lp, rows=("a" * 4000, *lp.rows[1:]))
+    with pytest.raises(InputError):
+        limits_of(lp, "m", [("*a" * 30 + "b", 1.0)])
+    assert limits_of(lp, "m", [("*a" * 30 + "*", 1.0)]).given.tolist()[:2] == [True, False]
 
 
 def test_the_messages():
