@@ -10,6 +10,7 @@ from difflib import get_close_matches
 from importlib import import_module
 
 from lpview import __version__
+from lpview.exit_status import DONE, NOT_ESTABLISHED, USAGE, worst
 from lpview.options.check import (
     REPORT_OPTIONS,
     add_report_options,
@@ -23,12 +24,6 @@ from lpview.options.prices import (
     add_prices_options,
     wrong_use,
 )
-
-DONE, FAILED, USAGE, NO_OPTIMUM, NOT_ESTABLISHED = 0, 1, 2, 3, 4
-"""Exit statuses of every command; README.md says what each means."""
-
-_WORST_FIRST = (USAGE, FAILED, NOT_ESTABLISHED, NO_OPTIMUM, DONE)
-"""Of several models, the first of these that occurred is the exit status."""
 
 
 def main(arguments: Sequence[str] | None = None) -> int:
@@ -95,11 +90,6 @@ def _run(options: argparse.Namespace) -> int:
     return worst(statuses)
 
 
-def worst(statuses: Sequence[int]) -> int:
-    """The exit status for several models."""
-    return next(status for status in _WORST_FIRST if status in statuses)
-
-
 def _complain(text: str, status: int) -> int:
     sys.stderr.write(text + "\n")
     return status
@@ -145,39 +135,48 @@ def _parser() -> argparse.ArgumentParser:
         for name, text in _COMMANDS.items()
     }
     for name, command in made.items():
-        several = name in ("check", "prove")
-        command.add_argument(
-            "models" if several else "model",
-            nargs="+" if several else None,
-            metavar="MODEL",
-            help="a .csv file or a folder of CSV blocks, an .mps file, or - for standard input",
-        )
-        add_input_options(command)
-        if name != "open":
-            command.add_argument("--output", metavar="FILE", help="write to this file")
+        _add_model(command, name)
     for name in ("check", "open", "prove", "prices", "plans", "curve"):
         _add_solve_options(made[name])
-    add_plan_options(made["check"])
-    made["prove"].set_defaults(plan=None)
     for name in ("check", "prove"):
         add_report_options(made[name])
-    made["check"].add_argument(
-        "--prove", action="store_true", help="prove the optimum in exact rational arithmetic"
-    )
-    made["prove"].set_defaults(prove=True)
-    made["verify"].add_argument("certificate", metavar="CERTIFICATE", help="what prove has written")
+    for name in ("check", "prove", "open"):
+        add_route_options(made[name])
+    add_plan_options(made["check"])
     add_prices_options(made["prices"])
     add_plans_options(made["plans"])
     add_curve_options(made["curve"])
-    for name in ("check", "prove", "open"):
-        add_route_options(made[name])
+    _add_what_differs(made)
+    return parser
+
+
+def _add_model(command: argparse.ArgumentParser, name: str) -> None:
+    """What every command begins with."""
+    several = name in ("check", "prove")
+    command.add_argument(
+        "models" if several else "model",
+        nargs="+" if several else None,
+        metavar="MODEL",
+        help="a .csv file or a folder of CSV blocks, an .mps file, or - for standard input",
+    )
+    add_input_options(command)
+    if name != "open":
+        command.add_argument("--output", metavar="FILE", help="write to this file")
+
+
+def _add_what_differs(made: dict[str, argparse.ArgumentParser]) -> None:
+    """Options of one command alone, and what others take for granted."""
+    made["check"].add_argument(
+        "--prove", action="store_true", help="prove the optimum in exact rational arithmetic"
+    )
+    made["prove"].set_defaults(prove=True, plan=None)
+    made["verify"].add_argument("certificate", metavar="CERTIFICATE", help="what prove has written")
     made["open"].add_argument(
         "--ascii", action="store_true", help="draw all marks with plain characters"
     )
     made["open"].set_defaults(
         format="text", full=False, prices=False, prove=False, plan=None, summary=False
     )
-    return parser
 
 
 def _add_solve_options(parser: argparse.ArgumentParser) -> None:

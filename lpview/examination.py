@@ -25,7 +25,8 @@ from lpview.basis import (
 from lpview.blocks import write_blocks
 from lpview.decimals import PRINTED_DIGITS, printed
 from lpview.dual import build_dual, original_answer
-from lpview.kkt import Condition, FileNumbers, Measurement, measure
+from lpview.file_numbers import FileNumbers
+from lpview.kkt import Condition, Measurement, measure
 from lpview.marks import mark
 from lpview.meanwhile import Meanwhile
 from lpview.model import LinearProgram

@@ -18,7 +18,8 @@ import numpy as np
 from lpview.accurate import Pair, two_sum
 from lpview.answer import Answer, Basis, LineStatus
 from lpview.basis import BasisMatrix
-from lpview.kkt import Condition, FileNumbers
+from lpview.file_numbers import FileNumbers
+from lpview.kkt import Condition
 from lpview.model import LinearProgram, Vector
 from lpview.verdict import Verdict
 

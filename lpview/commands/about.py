@@ -5,7 +5,7 @@ from __future__ import annotations
 import argparse
 import time
 
-from lpview import cli
+from lpview import exit_status
 from lpview.commands import leaving
 from lpview.outcomes import Optimal
 from lpview.priced import Between, StoppedEarlyError
@@ -62,7 +62,7 @@ def _digits(found: Optimal, ask: Ask, step: Between, full: bool) -> Written:
 
 
 def _status(known: bool) -> int:
-    return cli.DONE if known else cli.NOT_ESTABLISHED
+    return exit_status.DONE if known else exit_status.NOT_ESTABLISHED
 
 
 def asking(watch: Watch, limit: float | None, started: float) -> Ask:

@@ -8,7 +8,7 @@ import time
 from dataclasses import dataclass
 from typing import TYPE_CHECKING
 
-from lpview import cli
+from lpview import exit_status
 from lpview.blocks import InputError
 from lpview.commands.arriving import examined, lines_asked
 from lpview.commands.leaving import rendered, status, write
@@ -37,7 +37,7 @@ def check(options: argparse.Namespace) -> list[int]:
             statuses.append(_status(found[-1], options))
         except (InputError, NotRepresentableError) as error:
             sys.stderr.write(f"{error}\n")
-            statuses.append(cli.USAGE)
+            statuses.append(exit_status.USAGE)
     if found:
         write(_rendered(found, options), options.output)
     return statuses
@@ -86,7 +86,7 @@ def _status(checked: Checked, options: argparse.Namespace) -> int:
         from lpview.commands.prices import price_status
 
         statuses.append(price_status(checked.priced))
-    return cli.worst(statuses)
+    return exit_status.worst(statuses)
 
 
 def _rendered(checked: list[Checked], options: argparse.Namespace) -> str:

@@ -8,7 +8,7 @@ import time
 from collections.abc import Sequence
 from dataclasses import replace
 
-from lpview import cli
+from lpview import exit_status
 from lpview.blocks import InputError
 from lpview.blocks.mistakes import Mistake, quoted
 from lpview.commands import arriving, leaving
@@ -160,10 +160,10 @@ def _write(found: Optimal, made: Curve | NoCurve, options: argparse.Namespace) -
 
 
 _NO_CURVE = {
-    Why.NO_OPTIMUM: cli.NO_OPTIMUM,
-    Why.ONE_POINT: cli.DONE,
-    Why.STOPPED: cli.NOT_ESTABLISHED,
-    Why.NOT_FOUND: cli.NOT_ESTABLISHED,
+    Why.NO_OPTIMUM: exit_status.NO_OPTIMUM,
+    Why.ONE_POINT: exit_status.DONE,
+    Why.STOPPED: exit_status.NOT_ESTABLISHED,
+    Why.NOT_FOUND: exit_status.NOT_ESTABLISHED,
 }
 """Exit statuses where there is no curve."""
 
@@ -172,6 +172,6 @@ def _status(made: Curve | NoCurve) -> int:
     if isinstance(made, NoCurve):
         return _NO_CURVE[made.why]
     if not (made.bends_rightly and made.is_joined):
-        return cli.FAILED
+        return exit_status.FAILED
     open_ends = {made.below, made.above} & {Beyond.STOPPED, Beyond.NOT_FOUND}
-    return cli.NOT_ESTABLISHED if open_ends or made.stopped else cli.DONE
+    return exit_status.NOT_ESTABLISHED if open_ends or made.stopped else exit_status.DONE

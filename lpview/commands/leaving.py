@@ -6,7 +6,7 @@ import os
 import sys
 from pathlib import Path
 
-from lpview import cli
+from lpview import exit_status
 from lpview.outcomes import Examination, NoOptimum, Optimal
 from lpview.reading import Notes
 from lpview.report.document import Document
@@ -16,8 +16,8 @@ from lpview.report.heads import noticed
 def status(found: Examination) -> int:
     """The exit status of one examination."""
     if isinstance(found, Optimal):
-        return cli.DONE if found.passed else cli.FAILED
-    return cli.NO_OPTIMUM if isinstance(found, NoOptimum) else cli.NOT_ESTABLISHED
+        return exit_status.DONE if found.passed else exit_status.FAILED
+    return exit_status.NO_OPTIMUM if isinstance(found, NoOptimum) else exit_status.NOT_ESTABLISHED
 
 
 def tell_notes(source: str, notes: Notes) -> None:

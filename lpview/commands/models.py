@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import argparse
 
-from lpview import cli
+from lpview import exit_status
 from lpview.blocks import write_blocks, write_labels
 from lpview.commands.arriving import read
 from lpview.commands.leaving import tell_notes, write
@@ -17,7 +17,7 @@ def dual(options: argparse.Namespace) -> list[int]:
     reading, _ = read(options.model, options)
     tell_notes(options.model, reading.notes)
     write(write_blocks(build_dual(reading.model).program), options.output)
-    return [cli.DONE]
+    return [exit_status.DONE]
 
 
 def convert(options: argparse.Namespace) -> list[int]:
@@ -27,4 +27,4 @@ def convert(options: argparse.Namespace) -> list[int]:
     labels = write_labels(reading.model, reading.labels)
     blocks = write_blocks(reading.model)
     write(blocks + "\n" * bool(labels) + labels, options.output)
-    return [cli.DONE]
+    return [exit_status.DONE]

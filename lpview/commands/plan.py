@@ -5,12 +5,12 @@ from __future__ import annotations
 import argparse
 from dataclasses import replace
 
-from lpview import cli
+from lpview import exit_status
 from lpview.blocks import read_plan
 from lpview.commands import arriving, leaving
 from lpview.examination import examine
+from lpview.file_numbers import FileNumbers
 from lpview.given import GivenPlan
-from lpview.kkt import FileNumbers
 from lpview.model import LinearProgram
 from lpview.outcomes import Request, SecondRoute
 from lpview.planned import CheckedPlan, Limits, checked_plan, limits_of, measured
@@ -47,7 +47,7 @@ def check_plan(options: argparse.Namespace) -> list[int]:
 
     checked = watched(work, watch, reading.model.name)
     leaving.write(_rendered(checked, options), options.output)
-    return [cli.DONE if checked.accepted else cli.FAILED]
+    return [exit_status.DONE if checked.accepted else exit_status.FAILED]
 
 
 def _checked(

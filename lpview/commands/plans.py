@@ -8,7 +8,7 @@ import time
 
 import numpy as np
 
-from lpview import cli
+from lpview import exit_status
 from lpview.answer import Answer
 from lpview.blocks import write_values
 from lpview.commands import arriving, leaving
@@ -38,7 +38,7 @@ def plans(options: argparse.Namespace) -> list[int]:
     if isinstance(ready, NoPrices):
         document = no_prices_report(found, ready)
         leaving.write(leaving.rendered(document, options.format), options.output)
-        return [cli.NOT_ESTABLISHED]
+        return [exit_status.NOT_ESTABLISHED]
     if options.column is not None:
         line = arriving.lines_asked(found.head.model, "", lines)[0]
         return [_one_plan(found, ready, line, options)]
@@ -65,7 +65,7 @@ def _all_plans(
         stopped = error.claim
     document = reports.plans_report(found, ready.partition, intervals, stopped, options.full)
     leaving.write(leaving.rendered(document, options.format), options.output)
-    return cli.DONE if stopped is None else cli.NOT_ESTABLISHED
+    return exit_status.DONE if stopped is None else exit_status.NOT_ESTABLISHED
 
 
 def _one_plan(found: Optimal, ready: Prices, line: int, options: argparse.Namespace) -> int:
@@ -74,14 +74,14 @@ def _one_plan(found: Optimal, ready: Prices, line: int, options: argparse.Namesp
     point, end = ready.plan_at(line, greatest), ready.value_interval(line)[greatest]
     if not _is_optimal(found, point.x, point.ray):
         sys.stderr.write("not established: the plan that was found fails the check\n")
-        return cli.NOT_ESTABLISHED
+        return exit_status.NOT_ESTABLISHED
     leaving.tell_notes(found.head.request.source, found.head.notes)
     leaving.write(write_values("x", columns, point.x), options.output)
     if options.ray is not None and point.ray is not None:
         leaving.write(write_values("ray", columns, point.ray, sparse=True), options.ray)
     written = options.ray is not None
     sys.stderr.write(reports.end_sentence(found, line, greatest, end, written) + "\n")
-    return cli.DONE
+    return exit_status.DONE
 
 
 def _is_optimal(found: Optimal, x: Vector, ray: Vector | None) -> bool:

@@ -10,7 +10,7 @@ from dataclasses import replace
 
 import numpy as np
 
-from lpview import cli
+from lpview import exit_status
 from lpview.blocks import InputError, Mistake
 from lpview.blocks.mistakes import quoted
 from lpview.commands import about, arriving, leaving
@@ -50,7 +50,7 @@ def prices(options: argparse.Namespace) -> list[int]:
     text = _rendered(found, priced, options)
     if text:
         leaving.write(text, options.output)
-    return [cli.worst([leaving.status(found), price_status(priced)])]
+    return [exit_status.worst([leaving.status(found), price_status(priced)])]
 
 
 def _examined(options: argparse.Namespace, watch: Watch) -> Examination:
@@ -68,7 +68,7 @@ def _examined(options: argparse.Namespace, watch: Watch) -> Examination:
 def price_status(priced: Priced | NoPrices) -> int:
     """The exit status as far as prices were asked for."""
     known = isinstance(priced, Priced) and priced.stopped is None
-    return cli.DONE if known else cli.NOT_ESTABLISHED
+    return exit_status.DONE if known else exit_status.NOT_ESTABLISHED
 
 
 def without_prices(found: Examination, options: argparse.Namespace) -> int:
@@ -159,7 +159,7 @@ def _moved(found: Optimal, options: argparse.Namespace, watch: Watch) -> int:
         else together_report(found, made)
     )
     leaving.write(leaving.rendered(document, options.format), options.output)
-    return cli.DONE if known else cli.NOT_ESTABLISHED
+    return exit_status.DONE if known else exit_status.NOT_ESTABLISHED
 
 
 def _require_sides(found: Optimal, moves: Sequence[tuple[int, float]]) -> None:

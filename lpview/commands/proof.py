@@ -8,7 +8,7 @@ import time
 from fractions import Fraction
 from pathlib import Path
 
-from lpview import cli
+from lpview import exit_status
 from lpview.blocks import write_blocks
 from lpview.commands import arriving, leaving
 from lpview.outcomes import Examination, Head, Optimal, Stopped
@@ -70,10 +70,10 @@ def _write_certificate(head: Head, proof: Proof, target: str) -> None:
 def proof_status(found: Examination, proof: Proof) -> int:
     """The exit status: a proof decides; without one, the check may still have failed."""
     if isinstance(proof, ProvedOptimal):
-        return cli.DONE
+        return exit_status.DONE
     if isinstance(proof, NotProved):
-        return cli.worst([leaving.status(found), cli.NOT_ESTABLISHED])
-    return cli.NO_OPTIMUM
+        return exit_status.worst([leaving.status(found), exit_status.NOT_ESTABLISHED])
+    return exit_status.NO_OPTIMUM
 
 
 def verify(options: argparse.Namespace) -> list[int]:
@@ -87,14 +87,14 @@ def verify(options: argparse.Namespace) -> list[int]:
         problem = error.strerror or str(error)
         expected = "expected a certificate that lpview prove writes"
         sys.stderr.write(f"{options.certificate}: {expected}, got: {problem}\n")
-        return [cli.USAGE]
+        return [exit_status.USAGE]
     try:
         verdict = kernel.verify(canonical.encode(), certificate)
     except ValueError as refusal:
         words = f"REFUSED as a proof of this model: {refusal}"
         leaving.write(f"{options.certificate}: {words}\n", options.output)
-        return [cli.FAILED]
+        return [exit_status.FAILED]
     claim, _, value = verdict.rpartition(" ")
     words = f"{claim} {exact_text(Fraction(value))}"
     leaving.write(f"{options.certificate}: accepted as a proof: {words}\n", options.output)
-    return [cli.DONE]
+    return [exit_status.DONE]

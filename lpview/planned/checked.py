@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 
-from lpview.kkt import FileNumbers
+from lpview.file_numbers import FileNumbers
 from lpview.outcomes import Examination, NoOptimum, Optimal
 from lpview.planned.judging import Judged, judged
 from lpview.planned.limits import Limits

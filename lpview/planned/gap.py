@@ -14,7 +14,8 @@ import numpy as np
 
 from lpview import accurate
 from lpview.accurate import Pair
-from lpview.kkt import FileNumbers, Measurement, Side
+from lpview.file_numbers import FileNumbers
+from lpview.kkt import Measurement, Side
 from lpview.model import Vector
 
 UPWARD = 1.0 + 2.0**-50

@@ -22,8 +22,9 @@ from numpy.typing import NDArray
 
 from lpview import accurate
 from lpview.decimals import low_parts_of
+from lpview.file_numbers import FileNumbers
 from lpview.given import GivenPlan, Written
-from lpview.kkt import Condition, FileNumbers, Low, Measurement, Residuals, Side, measure
+from lpview.kkt import Condition, Low, Measurement, Residuals, Side, measure
 from lpview.model import LinearProgram, Vector
 from lpview.planned.gap import UPWARD, gap_radii
 

@@ -17,7 +17,8 @@ from dataclasses import dataclass
 
 import numpy as np
 
-from lpview.kkt import Condition, FileNumbers, Measurement, Residuals, measure
+from lpview.file_numbers import FileNumbers
+from lpview.kkt import Condition, Measurement, Residuals, measure
 from lpview.outcomes import Optimal
 from lpview.planned.judging import Judged
 from lpview.planned.measuring import (

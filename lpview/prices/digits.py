@@ -31,7 +31,7 @@ from numpy.typing import NDArray
 from lpview.accurate import Pair, minus, total, two_product, two_sum
 from lpview.answer import Basis, LineStatus
 from lpview.basis import BasisMatrix, SingularBasis, factor_basis
-from lpview.kkt import FileNumbers
+from lpview.file_numbers import FileNumbers
 from lpview.model import LinearProgram, Vector
 from lpview.outcomes import Optimal
 from lpview.prices.lines import Index, Mask

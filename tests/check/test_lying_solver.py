@@ -8,7 +8,7 @@ from dataclasses import replace
 import numpy as np
 import pytest
 
-from lpview import cli
+from lpview import cli, exit_status
 from lpview.answer import Basis
 from lpview.kkt import Condition
 from lpview.outcomes import NoOptimum, NotEstablished, Optimal, SecondRoute, Stopped
@@ -67,7 +67,7 @@ def test_a_wrong_answer_fails(name, tmp_path, monkeypatch):
     assert not found.passed
     assert failing(found) >= expected
     code, report = status_of(FEASIBLE, lying, tmp_path, monkeypatch)
-    assert code == cli.FAILED
+    assert code == exit_status.FAILED
     assert (report["status"], report["passed"]) == ("optimal", False)
     failed = {r["condition"] for r in report["residuals"] if r["passed"] is False}
     assert {condition.value for condition in expected} <= failed
@@ -137,7 +137,7 @@ def test_optimal_for_an_infeasible_model(value, tmp_path, monkeypatch):
     assert isinstance(found, Optimal)
     assert failing(found) >= {PRIMAL}
     code, report = status_of(INFEASIBLE, lying, tmp_path, monkeypatch)
-    assert (code, report["passed"]) == (cli.FAILED, False)
+    assert (code, report["passed"]) == (exit_status.FAILED, False)
 
 
 def test_optimal_for_an_unbounded_model(tmp_path, monkeypatch):
@@ -146,7 +146,7 @@ def test_optimal_for_an_unbounded_model(tmp_path, monkeypatch):
     assert failing(found) >= {DUAL}
     assert found.verdicts[1].worst == line_of(UNBOUNDED, "w")
     code, _ = status_of(UNBOUNDED, once(solved([2, 0], [1], [0, 2])), tmp_path, monkeypatch)
-    assert code == cli.FAILED
+    assert code == exit_status.FAILED
 
 
 CLAIMS = [Claim.INFEASIBLE, Claim.UNBOUNDED, Claim.INFEASIBLE_OR_UNBOUNDED, Claim.UNKNOWN]
@@ -163,7 +163,7 @@ def test_no_optimum_claimed_where_there_is_one(claim, name):
 @pytest.mark.parametrize("claim", CLAIMS)
 def test_no_optimum_claimed_where_there_is_one_at_the_command(claim, tmp_path, monkeypatch):
     code, report = status_of(FEASIBLE, once(unsolved(claim)), tmp_path, monkeypatch)
-    assert code == cli.NOT_ESTABLISHED
+    assert code == exit_status.NOT_ESTABLISHED
     assert (report["status"], report["passed"]) == ("not established", None)
     assert (report["certificate"], report["objective"]) == (None, None)
     assert report["settings"]["claim"] == claim.value
@@ -179,9 +179,13 @@ def test_the_certificate_decides_and_not_the_claim(claim, tmp_path, monkeypatch)
     assert isinstance(found, NoOptimum)
     assert isinstance(found.certificate, Unbounded)
     code, report = status_of(INFEASIBLE, once(unsolved(claim)), tmp_path, monkeypatch)
-    assert (code, report["status"], report["passed"]) == (cli.NO_OPTIMUM, "infeasible", None)
+    assert (code, report["status"], report["passed"]) == (
+        exit_status.NO_OPTIMUM,
+        "infeasible",
+        None,
+    )
     code, report = status_of(UNBOUNDED, once(unsolved(claim)), tmp_path, monkeypatch)
-    assert (code, report["status"], report["passed"]) == (cli.NO_OPTIMUM, "unbounded", None)
+    assert (code, report["status"], report["passed"]) == (exit_status.NO_OPTIMUM, "unbounded", None)
 
 
 @pytest.mark.parametrize("claim", CLAIMS)
@@ -237,7 +241,7 @@ STOPS = [Claim.TIME_LIMIT, Claim.ITERATION_LIMIT, Claim.INTERRUPTED]
 def test_a_stop_is_a_stop(claim, tmp_path, monkeypatch):
     assert isinstance(examined(INFEASIBLE, once(unsolved(claim))), Stopped)
     code, report = status_of(INFEASIBLE, once(unsolved(claim)), tmp_path, monkeypatch)
-    assert (code, report["status"]) == (cli.NOT_ESTABLISHED, "stopped")
+    assert (code, report["status"]) == (exit_status.NOT_ESTABLISHED, "stopped")
 
 
 def test_a_lie_about_the_dual_does_not_touch_the_verdict():
@@ -261,6 +265,6 @@ def test_every_format_can_say_what_is_no_number(form, value, part, tmp_path, mon
     monkeypatch.setattr("lpview.solver.solve", lying)
     report = tmp_path / "report"
     words = ["check", str(written(FEASIBLE, tmp_path)), "--format", form, "--output", str(report)]
-    assert cli.main(words) == cli.FAILED
+    assert cli.main(words) == exit_status.FAILED
     text = report.read_text("utf-8")
     assert "nan" in text or str(value) in text  # a difference of infinities is nan

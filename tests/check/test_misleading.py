@@ -5,7 +5,7 @@ from __future__ import annotations
 import numpy as np
 import pytest
 
-from lpview import cli
+from lpview import cli, exit_status
 from lpview.answer import LineStatus
 from lpview.blocks import read_model
 from lpview.kkt import Condition
@@ -179,7 +179,7 @@ def test_the_trap_at_the_command(tmp_path, monkeypatch):
     path, report = written(trap(0.9999999999), tmp_path), tmp_path / "report.json"
     code = cli.main(["check", str(path), "--format", "json", "--output", str(report)])
     exact = oracle.check_report(path, report.read_text("utf-8"))
-    assert code == cli.DONE
+    assert code == exit_status.DONE
     assert float(exact["primal feasibility"][0]) == pytest.approx(1e-10, rel=1e-5)
 
 
@@ -193,7 +193,7 @@ def test_coefficients_too_far_apart_are_refused(tmp_path, capsys):
     with pytest.raises(NotRepresentableError) as caught:
         examined(lp)
     assert str(caught.value) == message
-    assert cli.main(["check", str(written(lp, tmp_path))]) == cli.USAGE
+    assert cli.main(["check", str(written(lp, tmp_path))]) == exit_status.USAGE
     shown = capsys.readouterr()
     assert shown.out == ""
     assert message in shown.err
@@ -287,5 +287,5 @@ def test_a_free_model_at_rest():
 def test_every_format_is_written(lp, form, tmp_path):
     report = tmp_path / "report"
     words = ["check", str(written(lp, tmp_path)), "--format", form, "--output", str(report)]
-    assert cli.main(words) == cli.DONE
+    assert cli.main(words) == exit_status.DONE
     assert report.read_text("utf-8").endswith("\n")

@@ -7,7 +7,7 @@ from dataclasses import replace
 import numpy as np
 import pytest
 
-from lpview import cli
+from lpview import exit_status
 from lpview.answer import Basis, LineStatus
 from lpview.outcomes import NoBasisRoute, Optimal
 from lpview.polish import OwnNumbers
@@ -41,7 +41,7 @@ def test_an_answer_with_a_useless_basis(name, size, tmp_path, monkeypatch):
     assert found.passed is (size == 0)
     assert found.origin == OwnNumbers()
     code, report = status_of(FEASIBLE, lying, tmp_path, monkeypatch)
-    assert code == (cli.FAILED if size else cli.DONE)
+    assert code == (exit_status.FAILED if size else exit_status.DONE)
     assert report["answer"]["basis"] is (name != "none")
     assert report["answer"]["prices_from_basis"]["done"] is False
 

@@ -11,7 +11,7 @@ from pathlib import Path
 
 import pytest
 
-from lpview import cli
+from lpview import cli, exit_status
 from lpview.blocks import read_model
 from lpview.model import identical
 
@@ -119,7 +119,7 @@ def test_several_models_keep_the_good_reports_and_the_worst_status(bed, capfd):
 
 
 def test_the_order_of_exit_statuses_is_documented(capfd):
-    assert [cli.worst(pair) for pair in ([0, 3], [3, 4], [4, 1], [1, 2], [0, 0])] == [
+    assert [exit_status.worst(pair) for pair in ([0, 3], [3, 4], [4, 1], [1, 2], [0, 0])] == [
         *(3, 4, 1, 2, 0),
     ]
 

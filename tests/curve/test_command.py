@@ -11,7 +11,7 @@ from pathlib import Path
 
 import pytest
 
-from lpview import cli
+from lpview import cli, exit_status
 from lpview.blocks import InputError, read_model
 from lpview.commands import curve as curve_command
 from lpview.options.curve import add_curve_options
@@ -74,7 +74,7 @@ def two_sided(tmp_path: Path) -> str:
 
 def test_the_report(capfd):
     status, out, err = run(capfd, GLASS, "--row", "r2", "--ascii")
-    assert status == [cli.DONE] and err == "" and out.isascii()
+    assert status == [exit_status.DONE] and err == "" and out.isascii()
     lines = out.splitlines()
     assert lines[0] == f"{GLASS}: value curve of the right-hand side of row r2"
     assert lines[1] == "most decimals c 0, A 0, b 0"
@@ -124,7 +124,7 @@ def rows_of(text):
 def test_csv_along_the_curve(capfd):
     words = ["--row=r2", "--steps=5", "--record=x1", "--record=r3", "--format=csv"]
     status, out, err = run(capfd, GLASS, *words)
-    assert status == [cli.DONE] and err == ""
+    assert status == [exit_status.DONE] and err == ""
     rows = rows_of(out)
     assert [float(row["number"]) for row in rows] == [0, 3, 6, 12, 18, 24, 30]
     assert [float(row["objective"]) for row in rows] == [12, 19.5, 27, 36, 45, 45, 45]
@@ -146,7 +146,7 @@ def test_json(capfd):
     status, out, _ = run(capfd, GLASS, *words)
     content = json.loads(out)
     made = content["curve"]
-    assert status == [cli.DONE] and content["format"] == 1 and content["reason"] is None
+    assert status == [exit_status.DONE] and content["format"] == 1 and content["reason"] is None
     assert (made["row"], made["number"], made["sides"]) == ("r2", "right-hand side", ["upper"])
     assert (made["now"], made["objective"], made["shape"]) == (12, 36, "concave")
     assert made["breakpoints"] == pytest.approx([6, 18])
@@ -206,7 +206,7 @@ def test_what_is_not_there(words, message):
 def test_wrong_use(words, message, capfd):
     with pytest.raises(SystemExit) as caught:
         parser().parse_args([GLASS, *words])
-    assert caught.value.code == cli.USAGE
+    assert caught.value.code == exit_status.USAGE
     assert message in capfd.readouterr().err
 
 
@@ -234,11 +234,16 @@ def test_a_name_that_is_both_is_the_row(two_sided):
 @pytest.mark.parametrize(
     ("file", "words", "status", "says"),
     [
-        ("a1", ["--row=r2", "--span=-5:-1"], cli.NO_OPTIMUM, "there is no plan anywhere"),
-        ("a1", ["--row=r2", "--span=-5:0"], cli.DONE, "an optimum at 0 only; it is 12"),
-        ("a1", ["--row=r2", "--time-limit=1e-9"], cli.NOT_ESTABLISHED, "stopped before there was"),
-        ("c1-infeasible", ["--row=r1"], cli.NO_OPTIMUM, "infeasible, certified"),
-        ("c1-unbounded", ["--cost=x1"], cli.NO_OPTIMUM, "unbounded, certified"),
+        ("a1", ["--row=r2", "--span=-5:-1"], exit_status.NO_OPTIMUM, "there is no plan anywhere"),
+        ("a1", ["--row=r2", "--span=-5:0"], exit_status.DONE, "an optimum at 0 only; it is 12"),
+        (
+            "a1",
+            ["--row=r2", "--time-limit=1e-9"],
+            exit_status.NOT_ESTABLISHED,
+            "stopped before there was",
+        ),
+        ("c1-infeasible", ["--row=r1"], exit_status.NO_OPTIMUM, "infeasible, certified"),
+        ("c1-unbounded", ["--cost=x1"], exit_status.NO_OPTIMUM, "unbounded, certified"),
     ],
 )
 @pytest.mark.parametrize("form", ["text", "csv", "json"])
@@ -253,5 +258,5 @@ def test_where_there_is_no_curve(file, words, status, says, form, capfd):
 def test_written_to_a_file(tmp_path, capfd):
     path = tmp_path / "curve.csv"
     status, out, _ = run(capfd, GLASS, "--cost=x1", "--format=csv", "--output", str(path))
-    assert status == [cli.DONE] and out == ""
+    assert status == [exit_status.DONE] and out == ""
     assert [row["rate above"] for row in rows_of(path.read_text())] == ["0", "2", "2", "4", "4"]

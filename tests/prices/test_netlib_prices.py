@@ -24,7 +24,8 @@ import numpy as np
 import pytest
 
 from lpview.blocks import read_model
-from lpview.kkt import Condition, FileNumbers, measure
+from lpview.file_numbers import FileNumbers
+from lpview.kkt import Condition, measure
 from lpview.outcomes import Optimal
 from lpview.prices import Prices, work_out
 from lpview.run import Claim, Solved
