@@ -144,7 +144,7 @@ def effect(change: float, sign: float, unit: str = "") -> str:
 def _reach(move: Move, units: Units) -> str:
     if move.then is Then.NEVER:
         return "however many"
-    far = units.many(move.distance)
+    far = units.many(number(move.distance))
     if move.then is Then.NOT_FOUND:
         surely = f"surely for {far}, but " if move.distance > 0 else "but "
         return f"{surely}how far that holds was not found out"

@@ -109,9 +109,8 @@ class _Worth:
         return f"for {self.many(move.distance)}{end}"
 
     def many(self, distance: float) -> str:
-        """``46.2 litre``, ``1 unit``, ``2 units``."""
-        text = written_out(distance, DIGITS, ROUND_DOWN)
-        return f"{text} {self.units.own or ('unit' if text == '1' else 'units')}"
+        """``46.2 litre``, cut so that the move as printed can still be made."""
+        return self.units.many(written_out(distance, DIGITS, ROUND_DOWN))
 
 
 def _way(up: bool) -> str:

@@ -40,9 +40,8 @@ class Units:
         """Of its dual value, reduced cost or cost: ``EUR per kWh``."""
         return f"{self.objective} per {self.one}" if self.objective else ""
 
-    def many(self, amount: float) -> str:
-        """An amount of what its limits move by: ``40 kWh``, ``1 unit``, ``2 units``."""
-        text = number(amount)
+    def many(self, text: str) -> str:
+        """A written amount of what its limits move by: ``40 kWh``, ``1 unit``, ``2 units``."""
         return f"{text} {self.own or ('unit' if text == '1' else 'units')}"
 
 

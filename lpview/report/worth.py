@@ -86,12 +86,6 @@ def gain(change: float, sign: float, unit: str) -> str:
     return f"{verb} {written_amount(size, unit)}"
 
 
-def many(amount: float, units: Units) -> str:
-    """``40 kWh``, ``1 unit``, ``2 units``."""
-    text = written_out(amount)
-    return f"{text} {units.own or ('unit' if text == '1' else 'units')}"
-
-
 def step_sentence(found: Optimal, line: int, prices: LinePrices) -> str:
     """What one unit more and one less of a line's limit is worth; empty where that says nothing.
 
@@ -134,7 +128,7 @@ def _at_once(move: Move) -> str:
 def _far(move: Move, way: str, units: Units) -> str:
     if move.then is Then.NEVER:
         return f"however much {way}"
-    far = many(move.distance, units)
+    far = units.many(written_out(move.distance))
     if move.then is Then.NOT_FOUND:
         surely = f"for {far} {way} at least, but " if move.distance > 0 else "but "
         return f"{surely}how far that holds was not found out"

@@ -126,7 +126,7 @@ def test_a_price_has_a_unit_where_that_of_the_objective_is_known(known, objectiv
     assert units.price == price
     assert amount(2, units.price) == f"2 {price}".strip()
     assert amount(INF, "kWh") == "inf"
-    assert units.many(1) == f"1 {known or 'unit'}" and units.many(3) == f"3 {known or 'units'}"
+    assert units.many("1") == f"1 {known or 'unit'}" and units.many("3") == f"3 {known or 'units'}"
 
 
 # Ledgers and sentences -------------------------------------------------------
