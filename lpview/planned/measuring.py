@@ -73,11 +73,6 @@ class Measured:
     objective: Interval
     """``c'x + offset``."""
 
-    @property
-    def conditions(self) -> tuple[Condition, ...]:
-        """The conditions that can be judged."""
-        return tuple(self.within)
-
 
 def measured(lp: LinearProgram, plan: GivenPlan, numbers: FileNumbers | None = None) -> Measured:
     """Measure a plan.

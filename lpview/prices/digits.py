@@ -82,8 +82,6 @@ class Digits:
     """Estimated error of each variable, shape ``(n,)``, its own unit."""
     y_error: Vector
     """Estimated error of each dual value, shape ``(m,)``, its own unit."""
-    objective_error: float
-    """Estimated error of the objective, objective unit."""
     worst_column: int | None
     """The variable with fewest digits among those that are not zero; None if all are."""
     worst_row: int | None
@@ -119,7 +117,6 @@ def digits(found: Optimal) -> Digits | NoPrices:
         y=y,
         x_error=x_error,
         y_error=y_error,
-        objective_error=objective_error,
         worst_column=_worst(x, np.abs(found.answer.x) > zero),
         worst_row=_worst(y, found.marks.priced[:m]),
     )

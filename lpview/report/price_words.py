@@ -133,11 +133,16 @@ def move_clause(move: Move, up: bool, sign: float, where: str = "", units: Units
     return f"each {units.one} {way}{where} {worth}, {_reach(move, units)}"
 
 
+def improves(change: float, sign: float) -> bool:
+    """Whether a change of the objective is for the better; ``sign`` is that of the sense."""
+    return sign * change < 0
+
+
 def effect(change: float, sign: float, unit: str = "") -> str:
     """What a change of the objective is to the person who optimizes it."""
     if change == 0:
         return "changes nothing"
-    verb = "improves" if sign * change < 0 else "worsens"
+    verb = "improves" if improves(change, sign) else "worsens"
     return f"{verb} the objective by {amount(abs(change), unit)}"
 
 

@@ -11,6 +11,7 @@ from decimal import ROUND_CEILING, ROUND_DOWN, ROUND_FLOOR
 from lpview.ledger import ledger
 from lpview.outcomes import Optimal
 from lpview.prices import LinePrices, Move, Then
+from lpview.report.price_words import improves
 from lpview.report.prices import active
 from lpview.report.units import Units, in_units, units_of
 from lpview.report.worth import Limit, is_rate_same, limit_of, written_out
@@ -85,7 +86,7 @@ class _Worth:
 
     def verb(self, move: Move, up: bool) -> str:
         """What a move does, whose rate is not 0."""
-        better = self.sign * (move.rate if up else -move.rate) < 0
+        better = improves(move.rate if up else -move.rate, self.sign)
         return self.better if better else self.worse
 
     @property

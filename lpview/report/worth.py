@@ -18,6 +18,7 @@ from lpview.model import LinearProgram
 from lpview.outcomes import Optimal
 from lpview.prices import LinePrices, Move, Then
 from lpview.report.numbers import number
+from lpview.report.price_words import improves
 from lpview.report.prices import active, is_lower
 from lpview.report.units import Units, in_units, units_of
 
@@ -79,7 +80,7 @@ def gain(change: float, sign: float, unit: str) -> str:
     """What a change of the objective is: ``earns 2 EUR``; ``sign`` is that of the sense."""
     if change == 0:
         return "changes nothing"
-    better, size = sign * change < 0, abs(change)
+    better, size = improves(change, sign), abs(change)
     if not unit:
         return f"{'improves' if better else 'worsens'} the objective by {written_out(size)}"
     verb = ("saves" if sign > 0 else "earns") if better else "costs"

@@ -62,11 +62,6 @@ class TableView:
         """What a search looks at."""
         return "name or label" if self.labels else "name"
 
-    @property
-    def is_limited(self) -> bool:
-        """Whether any filter of the person's own is on."""
-        return bool(self.search or self.flag_word or self.family_word)
-
     def select(self, position: int) -> None:
         """Select the line at a place, held within the shown ones."""
         if self.order.size:

@@ -12,6 +12,7 @@ from lpview import cli
 from lpview.blocks import read_model
 from lpview.inputs import ReadAs, ending, negated, read_input, read_input_bytes
 from lpview.model import LinearProgram, Sense, identical
+from lpview.options.check import REPORT_OPTIONS
 from lpview.solver import solve
 from tests.strategies import linear_programs
 
@@ -144,3 +145,10 @@ def test_options_of_the_report_open_no_screen(monkeypatch: pytest.MonkeyPatch) -
     for option in ("--summary", "--plan=p.csv", "--format=json"):
         assert cli._with_command(["x.csv", option])[0] == "check"
     assert cli._with_command(["x.csv", "--labels", "l.csv"])[0] == "open"
+
+
+def test_options_of_the_report_are_those_that_the_screen_lacks() -> None:
+    commands = next(a for a in cli._parser()._actions if a.dest == "command").choices
+    assert isinstance(commands, dict)
+    check, screen = (set(commands[name]._option_string_actions) for name in ("check", "open"))
+    assert check - screen == REPORT_OPTIONS

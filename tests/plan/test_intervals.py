@@ -52,8 +52,8 @@ def test_residuals_are_those_of_fractions(plan):
     lp, x, y, z = plan
     found = measured(lp, given(x, y, z))
     correct, primal_span = exact.residuals(lp, x, y, z)
-    assert {c.value for c in found.conditions} == set(correct)
-    for condition in found.conditions:
+    assert {c.value for c in found.within} == set(correct)
+    for condition in found.within:
         written, within = found.written.residuals[condition], found.within[condition]
         lines = correct[condition.value]
         # Rows have no stationarity, but are counted.
@@ -80,7 +80,7 @@ def test_no_plan_within_the_rounding_has_a_smaller_residual(plan, random):
     for point in points(x, y, random):
         other_x, other_y = point[: lp.n], point[lp.n :]
         there, _ = exact.residuals(lp, fractions(other_x), fractions(other_y))
-        for condition in found.conditions:
+        for condition in found.within:
             least = found.within[condition].absolute.tolist()
             for (size, _, _), bound in zip(there[condition.value], least, strict=True):
                 assert Fraction(bound) <= size * (1 + Fraction(1, 10**12))
